@@ -34,7 +34,6 @@ func (s *Discrete) Accelerator() (*Accelerator, error) {
 // At writes φ_tt of the state at time t to dst. It is zero at held and odd ends.
 func (a *Accelerator) At(dst field.Slice, st field.State, t float64) {
 	s := a.s
-	line := s.block.Space
 	s.wave.Potential.Slope(a.w.slope, st.Field, s.at(t))
 	for c := range s.wave.Components {
 		d := dst.Component(c)
@@ -44,7 +43,7 @@ func (a *Accelerator) At(dst field.Slice, st field.State, t float64) {
 			s.addLoss(d, a.w, st.Rate.Component(c), c, 0, t, 1)
 		}
 		for i, r := range s.rho.row(a.w.rb, c, 0, t) {
-			d[i] /= line.Weight(i) * r
+			d[i] /= s.u[i] * r
 		}
 		s.clearHeld(d)
 	}

@@ -41,8 +41,8 @@ type Over func(x, t float64) float64
 // space link. ρ has its rows on the time links.
 //
 // A table of κ is averaged to the sites where links of fourth and sixth order
-// need it there, which limits their order to two unless κ is smooth to that
-// accuracy.
+// need it there, which limits their order to two where κ varies; a function
+// does not.
 type Table []float64
 
 // PerComponent gives each component a coefficient of its own; a nil entry
@@ -208,15 +208,18 @@ func (tr *track) row(buf []float64, c, n int, t float64) []float64 {
 	return buf
 }
 
-// check tests values on up to 64 rows of the block and names the first that is
-// not finite or that fails ok.
+// check names the first value that is not finite or that fails ok, on all rows
+// of tables and on up to 64 rows of functions of time, evenly spread.
 func (tr *track) check(name, want string, ok func(float64) bool) error {
 	buf := make([]float64, len(tr.xs))
-	const most = 64
-	for k := range min(most, tr.time.Sites) {
+	rows := tr.time.Sites
+	if !tr.coef.table() {
+		rows = min(rows, 64)
+	}
+	for k := range rows {
 		n := k
-		if tr.time.Sites > most {
-			n = k * (tr.time.Sites - 1) / (most - 1)
+		if rows < tr.time.Sites {
+			n = k * (tr.time.Sites - 1) / (rows - 1)
 		}
 		for c := range tr.values {
 			for i, v := range tr.row(buf, c, n, tr.time.At(n)) {

@@ -1,7 +1,7 @@
 package action
 
 import (
-	"fmt"
+	"sync"
 
 	"github.com/tenter-go/tenter/field"
 )
@@ -16,8 +16,8 @@ type Each struct {
 // Bilinear is the coupling V = ½Σ M[a][b]φ_aφ_b of a symmetric matrix M.
 type Bilinear [][]float64
 
-// Sum adds potentials of equally many components. A sum of one component
-// declares no vacua.
+// Sum adds potentials of equally many components. It declares no distance of
+// vacua.
 type Sum []Potential
 
 // Components returns N.
@@ -26,7 +26,9 @@ func (e Each) Components() int { return e.N }
 // Value implements Potential.
 func (e Each) Value(dst []float64, phi field.Slice, at Sites) {
 	clear(dst)
-	part := make([]float64, phi.Sites)
+	term := borrow(1, phi.Sites)
+	defer term.giveBack()
+	part := term.Component(0)
 	for c := range e.N {
 		e.Potential.Value(part, field.SliceOf(phi.Component(c)), at)
 		for i, v := range part {
@@ -103,7 +105,9 @@ func (s Sum) Components() int {
 // Value implements Potential.
 func (s Sum) Value(dst []float64, phi field.Slice, at Sites) {
 	clear(dst)
-	part := make([]float64, len(dst))
+	term := borrow(1, len(dst))
+	defer term.giveBack()
+	part := term.Component(0)
 	for _, p := range s {
 		p.Value(part, phi, at)
 		for i, v := range part {
@@ -115,76 +119,39 @@ func (s Sum) Value(dst []float64, phi field.Slice, at Sites) {
 // Slope implements Potential.
 func (s Sum) Slope(dst, phi field.Slice, at Sites) {
 	dst.Zero()
-	part := field.NewSlice(dst.Components, dst.Sites)
+	term := borrow(dst.Components, dst.Sites)
+	defer term.giveBack()
 	for _, p := range s {
-		p.Slope(part, phi, at)
-		dst.Axpy(1, part)
+		p.Slope(term.Slice, phi, at)
+		dst.Axpy(1, term.Slice)
 	}
 }
 
 // Curvature implements Potential.
 func (s Sum) Curvature(dst, phi field.Slice, at Sites) {
 	dst.Zero()
-	part := field.NewSlice(dst.Components, dst.Sites)
+	term := borrow(dst.Components, dst.Sites)
+	defer term.giveBack()
 	for _, p := range s {
-		p.Curvature(part, phi, at)
-		dst.Axpy(1, part)
+		p.Curvature(term.Slice, phi, at)
+		dst.Axpy(1, term.Slice)
 	}
 }
 
-// checkPotential returns an error if a combination does not fit together.
-func checkPotential(p Potential) error {
-	switch v := p.(type) {
-	case nil:
-		return fmt.Errorf("action: potential is nil; want a Potential")
-	case Each:
-		if v.N < 1 {
-			return fmt.Errorf("action: Each on %d components; want at least 1", v.N)
-		}
-		if err := checkPotential(v.Potential); err != nil {
-			return err
-		}
-		if n := v.Potential.Components(); n != 1 {
-			return fmt.Errorf("action: Each of a potential of %d components; want one of 1", n)
-		}
-	case Sum:
-		if len(v) == 0 {
-			return fmt.Errorf("action: sum of no potentials; want at least 1")
-		}
-		for k, q := range v {
-			if err := checkPotential(q); err != nil {
-				return err
-			}
-			if q.Components() != v.Components() {
-				return fmt.Errorf("action: term %d of a sum has %d components, term 0 has %d; want equally many", k, q.Components(), v.Components())
-			}
-		}
-	case Bilinear:
-		for a, row := range v {
-			if len(row) != len(v) {
-				return fmt.Errorf("action: row %d of a bilinear coupling has %d numbers; want %d", a, len(row), len(v))
-			}
-			for b := range row {
-				if v[a][b] != v[b][a] {
-					return fmt.Errorf("action: bilinear coupling has M[%d][%d] = %v and M[%d][%d] = %v; want a symmetric matrix", a, b, v[a][b], b, a, v[b][a])
-				}
-			}
-		}
-	case Scalar:
-		if v.V == nil || v.D1 == nil || v.D2 == nil {
-			return fmt.Errorf("action: Scalar with a nil function; want V, V′ and V″ (or use Auto)")
-		}
-	case Auto:
-		if v == nil {
-			return fmt.Errorf("action: nil Auto; want a function")
-		}
-	case Polynomial:
-		if len(v) == 0 {
-			return fmt.Errorf("action: polynomial of no coefficients; want at least c[0]")
-		}
+// A loan is working memory for one term of a sum, borrowed so that a march
+// allocates nothing.
+type loan struct{ field.Slice }
+
+var loans = sync.Pool{New: func() any { return new(loan) }}
+
+func borrow(components, sites int) *loan {
+	l := loans.Get().(*loan)
+	if n := components * sites; cap(l.Data) < n {
+		l.Data = make([]float64, n)
 	}
-	if n := p.Components(); n < 1 {
-		return fmt.Errorf("action: potential of %d components; want at least 1", n)
-	}
-	return nil
+	l.Data = l.Data[:components*sites]
+	l.Components, l.Sites, l.Stride = components, sites, sites
+	return l
 }
+
+func (l *loan) giveBack() { loans.Put(l) }

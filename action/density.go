@@ -96,18 +96,31 @@ func (w Wave) discretise(b lattice.Block) (*Discrete, error) {
 	if n := max(len(b.Time.Jump), len(b.Space.Jump)); n > w.Components {
 		return nil, fmt.Errorf("action: an axis has a jump for %d components, the density has %d", n, w.Components)
 	}
-	s := &Discrete{block: b, wave: w, xs: b.Space.Positions(nil)}
+	s := &Discrete{block: b, wave: w, xs: b.Space.Positions(nil), u: make([]float64, b.Sites())}
+	for i := range s.u {
+		s.u[i] = b.Space.Weight(i)
+	}
 	var err error
-	if s.elastic, err = newElastic(b.Space, w.Links); err != nil {
-		return nil, err
-	}
-	if s.viscous, err = newElastic(b.Space, Nearest); err != nil {
-		return nil, err
-	}
 	if err := s.sample(); err != nil {
 		return nil, err
 	}
+	if s.elastic, err = newElastic(b.Space, w.Links, s.cut()); err != nil {
+		return nil, err
+	}
+	if s.viscous, err = newElastic(b.Space, Nearest, [2]bool{}); err != nil {
+		return nil, err
+	}
 	return s, s.refuse()
+}
+
+// cut reports where wide links stop at an end: where φ_x is neither zero nor
+// prescribed, at open ends and, with β, at free ones whose flux varies in time.
+func (s *Discrete) cut() (cut [2]bool) {
+	line := s.block.Space
+	for k, end := range []lattice.End{line.Left, line.Right} {
+		cut[k] = s.wave.Links > Nearest && (end == lattice.Open || end == lattice.Free && !s.beta.zero() && s.flux[k].fixed == nil)
+	}
+	return cut
 }
 
 // sample puts the coefficients where they live.
@@ -125,7 +138,7 @@ func (s *Discrete) sample() error {
 	if _, split := w.Sigma.(PerComponent); split {
 		return fmt.Errorf("action: σ given per component; it multiplies V, which is one number for all of them")
 	}
-	any := func(float64) bool { return true }
+	finite := func(float64) bool { return true }
 	notNegative := func(v float64) bool { return v >= 0 }
 	for _, t := range []struct {
 		dst   **track
@@ -139,12 +152,12 @@ func (s *Discrete) sample() error {
 	}{
 		{&s.rho, "ρ", w.Rho, 1, s.xs, halves, " > 0", func(v float64) bool { return v > 0 }},
 		{&s.kappa, "κ", w.Kappa, 1, between, clock, " ≥ 0", notNegative},
-		{&s.sigma, "σ", w.Sigma, 1, s.xs, clock, "", any},
-		{&s.source, "source", w.Source, 0, s.xs, clock, "", any},
+		{&s.sigma, "σ", w.Sigma, 1, s.xs, clock, "", finite},
+		{&s.source, "source", w.Source, 0, s.xs, clock, "", finite},
 		{&s.alpha, "α", w.Alpha, 0, s.xs, clock, " ≥ 0", notNegative},
 		{&s.beta, "β", w.Beta, 0, between, clock, " ≥ 0", notNegative},
-		{&s.flux[0], "left flux", w.LeftFlux, 0, s.xs[:1], clock, "", any},
-		{&s.flux[1], "right flux", w.RightFlux, 0, s.xs[len(s.xs)-1:], clock, "", any},
+		{&s.flux[0], "left flux", w.LeftFlux, 0, s.xs[:1], clock, "", finite},
+		{&s.flux[1], "right flux", w.RightFlux, 0, s.xs[len(s.xs)-1:], clock, "", finite},
 	} {
 		tr, err := newTrack(t.name, t.coef, t.unset, w.Components, t.xs, t.time)
 		if err != nil {
@@ -160,6 +173,9 @@ func (s *Discrete) sample() error {
 	if w.Links > Nearest && !s.kappa.coef.table() {
 		tr, err := newTrack("κ", w.Kappa, 1, w.Components, s.xs, clock)
 		if err != nil {
+			return err
+		}
+		if err := tr.check("κ", " ≥ 0", notNegative); err != nil {
 			return err
 		}
 		s.kappaSites = tr

@@ -18,6 +18,7 @@ type Discrete struct {
 	block   lattice.Block
 	wave    Wave
 	xs      []float64 // positions of the sites
+	u       []float64 // their shares of a cell
 	elastic *elastic
 	viscous *elastic // the nearest-neighbour links that carry β
 
@@ -50,6 +51,7 @@ type scratch struct {
 	curve                              field.Slice
 	kl, ks, rb, ra, sigma, src, al, be []float64
 	tmp                                []float64
+	one                                [1]float64
 }
 
 func (s *Discrete) newScratch() *scratch {
@@ -130,29 +132,30 @@ func (s *Discrete) addForce(dst []float64, w *scratch, phi, slope []float64, c, 
 		dst[i] += scale * (src[i] - sigma[i]*slope[i])
 	}
 	for _, i := range [2]int{0, last} {
-		dst[i] += scale * s.block.Space.Weight(i) * (src[i] - sigma[i]*slope[i])
+		dst[i] += scale * s.u[i] * (src[i] - sigma[i]*slope[i])
 	}
-	s.addFlux(dst, c, n, t, scale)
+	s.addFlux(dst, w, c, n, t, scale)
 }
 
 // addFlux adds the force of the prescribed end fluxes.
-func (s *Discrete) addFlux(dst []float64, c, n int, t, scale float64) {
+func (s *Discrete) addFlux(dst []float64, w *scratch, c, n int, t, scale float64) {
 	if s.block.Space.Periodic {
 		return
 	}
 	h := s.block.Space.Step
 	last := len(dst) - 1
-	left, right := s.fluxAt(c, n, t)
-	for j, g := range s.elastic.end {
+	left, right := s.fluxAt(w, c, n, t)
+	for j, g := range s.elastic.flux[0] {
 		dst[j] -= scale * g * left / h
+	}
+	for j, g := range s.elastic.flux[1] {
 		dst[last-j] += scale * g * right / h
 	}
 }
 
-func (s *Discrete) fluxAt(c, n int, t float64) (left, right float64) {
-	var one [1]float64
-	left = s.flux[0].row(one[:], c, n, t)[0]
-	right = s.flux[1].row(one[:], c, n, t)[0]
+func (s *Discrete) fluxAt(w *scratch, c, n int, t float64) (left, right float64) {
+	left = s.flux[0].row(w.one[:], c, n, t)[0]
+	right = s.flux[1].row(w.one[:], c, n, t)[0]
 	return left, right
 }
 

@@ -2,50 +2,10 @@ package action
 
 import (
 	"fmt"
+	"math"
 
 	"github.com/tenter-go/tenter/lattice"
 )
-
-// Links is the order of accuracy of the elastic energy −½κφ_x², and with it the
-// stencil of everything derived from it. The energy of one slice is
-//
-//	h Σ_d b_d Σ_i ½κ [(φ(i+d) − φ(i))/h]²
-//
-// over links of length d = 1 … Links/2, κ sampled in the middle of each link,
-// with the weights b of the central second difference [Fornberg 1988, Math.
-// Comp. 51, 699, table 1].
-type Links int
-
-// The orders of links.
-const (
-	Nearest Links = 2 // b = 1
-	Fourth  Links = 4 // b = 4/3, −1/12
-	Sixth   Links = 6 // b = 3/2, −3/20, 1/90
-)
-
-func (l Links) weights() []float64 {
-	switch l {
-	case Nearest:
-		return []float64{1}
-	case Fourth:
-		return []float64{4. / 3, -1. / 12}
-	case Sixth:
-		return []float64{3. / 2, -3. / 20, 1. / 90}
-	}
-	return nil
-}
-
-// Mu returns h²/c² times the largest squared frequency of the links alone:
-// 4, 16/3 and 272/45 for the orders 2, 4 and 6.
-func (l Links) Mu() float64 {
-	var mu float64
-	for k, b := range l.weights() {
-		if d := k + 1; d%2 == 1 { // sin²(dθ/2) at θ = π
-			mu += 4 * b
-		}
-	}
-	return mu
-}
 
 // elastic is the quadratic form of the links on one slice of an axis, per hk:
 // U = Σ ½wκ(Σ_p coef_p φ(site_p) + offset)², w = b_d/h². Links inside the axis
@@ -57,7 +17,9 @@ type elastic struct {
 	w      []float64 // w[d−1] = b_d/h²
 	edges  []edge
 
-	end []float64 // weights of a prescribed flux on the sites next to an end
+	// flux[k] has the weights with which a flux through the left (0) or right (1)
+	// end enters the sites next to it.
+	flux [2][]float64
 }
 
 // An edge is a link, mirrored or wrapped, between the sites a and b and, at an
@@ -67,11 +29,14 @@ type edge struct {
 	site [3]int     // a, b, end; on a ring b may be ≥ Sites
 	coef [3]float64 // 0 for an unused third site
 	jump float64    // multiple of the axis's jump that is added
-	half float64    // weight of the mirror image
+	half float64    // weight: ½ for a link that is its own mirror image
 	at   int        // where κ is sampled: the link if d is odd, the site if even
 }
 
-func newElastic(line lattice.Axis, order Links) (*elastic, error) {
+// newElastic puts links on an axis. Where cut is set for its left or right end
+// they stop there, for fields that have a slope at the end and no smooth mirror
+// image.
+func newElastic(line lattice.Axis, order Links, cut [2]bool) (*elastic, error) {
 	b := order.weights()
 	if b == nil {
 		return nil, fmt.Errorf("action: links of order %d; want 2, 4 or 6", int(order))
@@ -83,23 +48,59 @@ func newElastic(line lattice.Axis, order Links) (*elastic, error) {
 	for _, v := range b {
 		e.w = append(e.w, v/(line.Step*line.Step))
 	}
-	for d := 1; d <= e.radius; d++ {
-		if line.Periodic {
+	if line.Periodic {
+		for d := 1; d <= e.radius; d++ {
 			e.wrap(d)
+		}
+		return e, nil
+	}
+	for k, end := range []lattice.End{line.Left, line.Right} {
+		if cut[k] {
+			e.flux[k] = []float64{1}
 			continue
 		}
-		e.mirror(d, line.Left, func(j int) int { return j })
-		e.mirror(d, line.Right, func(j int) int { return line.Sites - 1 - j })
-	}
-	e.end = make([]float64, e.radius)
-	for k, v := range b {
-		d := k + 1
-		e.end[0] += v * float64(d)
-		for j := 1; j < d; j++ {
-			e.end[j] += 2 * v * float64(d-j)
+		e.flux[k] = make([]float64, e.radius)
+		for i, v := range b {
+			d := i + 1
+			e.mirror(d, end, func(j int) int {
+				if k == 1 {
+					return line.Sites - 1 - j
+				}
+				return j
+			})
+			e.flux[k][0] += v * float64(d)
+			for j := 1; j < d; j++ {
+				e.flux[k][j] += 2 * v * float64(d-j)
+			}
 		}
 	}
+	e.stiffen(b, cut)
 	return e, nil
+}
+
+// stiffen makes up for the links that a cut end lacks by nearest-neighbour
+// links, so that the tension of a field of uniform slope is the same across
+// every cut between sites and pulls at the end site alone.
+func (e *elastic) stiffen(b []float64, cut [2]bool) {
+	last := e.line.Sites - 1
+	for i := range last {
+		missing := 1.0
+		for k, v := range b {
+			d := k + 1
+			from, to := i-d+1, i // where links across the cut may start
+			if cut[0] {
+				from = max(from, 0)
+			}
+			if cut[1] {
+				to = min(to, last-d)
+			}
+			missing -= v * float64(d*(to-from+1))
+		}
+		const rounding = 1e-12
+		if math.Abs(missing) > rounding {
+			e.edges = append(e.edges, edge{d: 1, site: [3]int{i, i + 1, 0}, coef: [3]float64{-1, 1, 0}, half: missing / b[0], at: i})
+		}
+	}
 }
 
 // wrap adds the links of length d that close a ring.
@@ -275,15 +276,22 @@ func (e *elastic) power(dst, phi, rate []float64, k stiffness, jump float64) {
 		t := e.tension(g, phi, k, jump)
 		stretching := g.coef[0]*va + g.coef[1]*vb
 		if g.coef[2] != 0 {
+			// What the work of a moving end brings goes to the nearer site first.
+			work := t * g.coef[2] * rate[g.site[2]]
+			e.carry(dst, g.site[2], a, work)
 			stretching += g.coef[2] * rate[g.site[2]]
 		}
-		p := t * (0.5*stretching - g.coef[1]*vb) // what b gains
-		if a > b {
-			a, b, p = b, a, -p
-		}
-		for cut := a; cut < b; cut++ {
-			dst[e.on(cut)] += p
-		}
+		e.carry(dst, a, b, t*(0.5*stretching-g.coef[1]*vb)) // what b gains
+	}
+}
+
+// carry adds the power p from site a to site b to the cuts between them.
+func (e *elastic) carry(dst []float64, a, b int, p float64) {
+	if a > b {
+		a, b, p = b, a, -p
+	}
+	for cut := a; cut < b; cut++ {
+		dst[e.on(cut)] += p
 	}
 }
 
@@ -316,44 +324,4 @@ func (e *elastic) fillBand(band []float64, k stiffness) {
 			}
 		}
 	}
-}
-
-// slope writes φ_x to dst by the central difference of the links' order, with
-// the mirror images or the wrapped field beyond the ends. stretch is φ_x
-// prescribed at a free left and right end.
-func (e *elastic) slope(dst, phi []float64, jump float64, stretch [2]float64) {
-	h := e.line.Step
-	for i := range dst {
-		var s float64
-		for k, w := range e.w {
-			d := k + 1
-			// The weights of the central first difference are b_d·d/2h.
-			s += w * h * float64(d) / 2 * (e.beyond(phi, i+d, jump, stretch) - e.beyond(phi, i-d, jump, stretch))
-		}
-		dst[i] = s
-	}
-}
-
-// beyond returns the field at site i, which may lie outside of the axis.
-func (e *elastic) beyond(phi []float64, i int, jump float64, stretch [2]float64) float64 {
-	n := e.line.Sites
-	switch {
-	case i >= 0 && i < n:
-		return phi[i]
-	case e.line.Periodic && i < 0:
-		return phi[i+n] - jump
-	case e.line.Periodic:
-		return phi[i-n] + jump
-	case i < 0:
-		return image(phi[0], phi[-i], e.line.Left) + 2*float64(i)*e.line.Step*stretch[0]
-	}
-	m := i - (n - 1)
-	return image(phi[n-1], phi[n-1-m], e.line.Right) + 2*float64(m)*e.line.Step*stretch[1]
-}
-
-func image(end, inside float64, kind lattice.End) float64 {
-	if kind.Unknown() {
-		return inside
-	}
-	return 2*end - inside
 }

@@ -35,13 +35,13 @@ func (s *Discrete) Energy(st field.State, t float64) Energy {
 	v := w.tmp
 	s.wave.Potential.Value(v, st.Field, s.at(t))
 	for i, sigma := range s.sigma.row(w.sigma, 0, n, t) {
-		e.Potential += line.Weight(i) * sigma * v[i]
+		e.Potential += s.u[i] * sigma * v[i]
 	}
 	for c := range s.wave.Components {
 		phi := st.Field.Component(c)
 		for i, r := range s.rhoAt(w, c, n, t) {
 			q := st.Rate.Component(c)[i]
-			e.Kinetic += 0.5 * line.Weight(i) * r * q * q
+			e.Kinetic += 0.5 * s.u[i] * r * q * q
 		}
 		e.Elastic += s.elastic.energy(phi, s.kappaAt(w, c, n, t), line.JumpOf(c))
 		e.Source += s.sourceEnergy(w, phi, c, n, t)
@@ -63,7 +63,7 @@ func (s *Discrete) EnergyDensity(dst []float64, st field.State, t float64) []flo
 		s.elastic.share(dst, st.Field.Component(c), s.kappaAt(w, c, n, t), line.JumpOf(c))
 	}
 	for i := range dst {
-		dst[i] /= line.Weight(i)
+		dst[i] /= s.u[i]
 	}
 	s.wave.Potential.Value(w.tmp, st.Field, s.at(t))
 	for i, sigma := range s.sigma.row(w.sigma, 0, n, t) {
@@ -101,7 +101,7 @@ func (s *Discrete) EnergyFlux(dst []float64, st field.State, t float64) []float6
 func (s *Discrete) Momentum(st field.State, t float64) float64 {
 	var sum float64
 	for i, p := range s.MomentumDensity(nil, st, t) {
-		sum += s.block.Space.Weight(i) * p
+		sum += s.u[i] * p
 	}
 	return sum * s.block.Space.Step
 }
@@ -118,14 +118,7 @@ func (s *Discrete) MomentumDensity(dst []float64, st field.State, t float64) []f
 	for c := range s.wave.Components {
 		var stretch [2]float64
 		if !line.Periodic {
-			k := s.kappa.row(w.kl, c, n, t)
-			left, right := s.fluxAt(c, n, t)
-			if left != 0 {
-				stretch[0] = left / k[0]
-			}
-			if right != 0 {
-				stretch[1] = right / k[len(k)-1]
-			}
+			stretch = s.endSlopes(w, st.Rate.Component(c), c, n, t)
 		}
 		s.elastic.slope(w.tmp, st.Field.Component(c), line.JumpOf(c), stretch)
 		rate := st.Rate.Component(c)
@@ -134,6 +127,27 @@ func (s *Discrete) MomentumDensity(dst []float64, st field.State, t float64) []f
 		}
 	}
 	return dst
+}
+
+// endSlopes returns φ_x at ends where it is not zero: the prescribed flux over κ
+// at a free end, ±√(ρ/κ)φ_t at an open one.
+func (s *Discrete) endSlopes(w *scratch, rate []float64, c, n int, t float64) (stretch [2]float64) {
+	line := s.block.Space
+	left, right := s.fluxAt(w, c, n, t)
+	if line.Left == lattice.Open {
+		left = s.impedance(w, c, n, t, false) * rate[0]
+	}
+	if line.Right == lattice.Open {
+		right = -s.impedance(w, c, n, t, true) * rate[len(rate)-1]
+	}
+	k := s.kappa.row(w.kl, c, n, t)
+	if left != 0 {
+		stretch[0] = left / k[0]
+	}
+	if right != 0 {
+		stretch[1] = right / k[len(k)-1]
+	}
+	return stretch
 }
 
 // Charge returns the topological charge of component c of a slice: what the
@@ -172,10 +186,10 @@ func (s *Discrete) Power(st field.State, t float64) Power {
 	for c := range s.wave.Components {
 		v := st.Rate.Component(c)
 		for i, j := range s.source.row(w.src, c, n, t) {
-			p.Source += h * line.Weight(i) * j * v[i]
+			p.Source += h * s.u[i] * j * v[i]
 		}
 		for i, a := range s.alpha.row(w.al, c, n, t) {
-			p.Loss -= h * line.Weight(i) * a * v[i] * v[i]
+			p.Loss -= h * s.u[i] * a * v[i] * v[i]
 		}
 		if !s.beta.zero() {
 			p.Loss -= 2 * h * s.viscous.energy(v, stiffness{links: s.beta.row(w.be, c, n, t)}, 0)
@@ -184,9 +198,11 @@ func (s *Discrete) Power(st field.State, t float64) Power {
 			continue
 		}
 		last := len(v) - 1
-		left, right := s.fluxAt(c, n, t)
-		for j, g := range s.elastic.end {
+		left, right := s.fluxAt(w, c, n, t)
+		for j, g := range s.elastic.flux[0] {
 			p.Left -= g * left * v[j]
+		}
+		for j, g := range s.elastic.flux[1] {
 			p.Right += g * right * v[last-j]
 		}
 		if line.Left == lattice.Open {

@@ -24,7 +24,9 @@ type March struct {
 	last    field.Slice // φ(n) − φ(n−1)
 	rhs     []float64
 	damp    []float64
-	viscous *tridiagonal // nil without β
+	viscous []*tridiagonal // of each component; nil without β
+	steady  bool           // the matrices do not depend on time
+	plain   []plain        // nil unless the coefficients are the same everywhere
 }
 
 // March returns the march of a Lorentzian density. It panics for a Euclidean
@@ -34,9 +36,12 @@ func (s *Discrete) March() *March {
 		panic("action: march of a Euclidean density; want a Lorentzian one")
 	}
 	n := len(s.xs)
-	m := &March{s: s, w: s.newScratch(), last: field.NewSlice(s.wave.Components, n), rhs: make([]float64, n), damp: make([]float64, n)}
+	m := &March{s: s, w: s.newScratch(), last: field.NewSlice(s.wave.Components, n), rhs: make([]float64, n), damp: make([]float64, n), plain: s.plainLines()}
 	if !s.beta.zero() {
-		m.viscous = newTridiagonal(n)
+		for range s.wave.Components {
+			m.viscous = append(m.viscous, newTridiagonal(n))
+		}
+		m.steady = s.rho.fixed != nil && s.alpha.fixed != nil && s.beta.fixed != nil && s.kappa.fixed != nil
 	}
 	return m
 }
@@ -60,6 +65,10 @@ func (m *March) Tangent(next, now, before, phi field.Slice, n int) {
 
 func (m *March) advance(next, now, before field.Slice, n int, full bool) {
 	s := m.s
+	if m.plain != nil {
+		m.advancePlain(next, now, before, n, full)
+		return
+	}
 	t := s.block.Time.At(n)
 	for c := range s.wave.Components {
 		to, at, from := next.Component(c), now.Component(c), before.Component(c)
@@ -91,7 +100,7 @@ func (m *March) Start(next field.Slice, st field.State, n int) {
 				continue
 			}
 			// φ(n) − φ(n−1) = 2kv − δ, δ = φ(n+1) − φ(n), in the formula of March
-			u := s.block.Space.Weight(i)
+			u := s.u[i]
 			to[i] = at[i] + (2*before[i]*v[i]*k+k*k*f[i]/u)/(before[i]+after[i])
 		}
 	}
@@ -104,7 +113,6 @@ func (m *March) held(i int) bool {
 // solve writes component c of slice n+1 to next, gain being φ(n) − φ(n−1).
 func (m *March) solve(next, now, gain []float64, c, n int, t float64, full bool) {
 	s, w := m.s, m.w
-	line := s.block.Space
 	k := s.block.Time.Step
 	f := m.rhs
 	clear(f)
@@ -124,47 +132,60 @@ func (m *March) solve(next, now, gain []float64, c, n int, t float64, full bool)
 		hi--
 	}
 	if s.lossy() == "" {
-		step := func(i int, u float64) {
-			next[i] = now[i] + (before[i]*gain[i]+k*k/u*f[i])/after[i]
-		}
-		for i := max(lo, 1); i < min(hi, len(f)-1); i++ {
-			next[i] = now[i] + (before[i]*gain[i]+k*k*f[i])/after[i]
-		}
-		if lo == 0 {
-			step(0, line.Weight(0))
-		}
-		if last := len(f) - 1; hi == len(f) {
-			step(last, line.Weight(last))
-		}
-		return
-	}
-	a := m.damp
-	if m.viscous == nil {
 		for i := lo; i < hi; i++ {
-			u := line.Weight(i) / (k * k)
-			next[i] = now[i] + ((u*before[i]-a[i])*gain[i]+f[i])/(u*after[i]+a[i])
+			next[i] = now[i] + (before[i]*gain[i]+k*k/s.u[i]*f[i])/after[i]
 		}
 		return
 	}
-	// (uρ₊/k² + a − B/2k)δ = (uρ₋/k² − a + B/2k)gain + f, B the second
-	// difference that β carries.
-	beta := stiffness{links: s.beta.row(w.be, c, n, t)}
-	s.viscous.addForce(f, gain, beta, 0, 1/(2*k))
-	for i := range f {
-		u := line.Weight(i) / (k * k)
-		f[i] += (u*before[i] - a[i]) * gain[i]
-		m.viscous.diagonal[i] = u*after[i] + a[i]
+	if m.viscous != nil {
+		m.solveViscous(next, now, gain, before, after, c, n, t)
+		return
 	}
-	m.viscous.subtractLinks(beta.links, line.Periodic, s.viscous.w[0]/(2*k))
-	if lo == 1 {
-		m.viscous.fix(0, next[0]-now[0], f)
-	}
-	if hi < len(f) {
-		m.viscous.fix(len(f)-1, next[len(f)-1]-now[len(f)-1], f)
-	}
-	m.viscous.solve(f)
 	for i := lo; i < hi; i++ {
-		next[i] = now[i] + f[i]
+		u, a := s.u[i]/(k*k), m.damp[i]
+		next[i] = now[i] + ((u*before[i]-a)*gain[i]+f[i])/(u*after[i]+a)
+	}
+}
+
+// solveViscous solves
+//
+//	(uρ₊/k² + a − B/2k)δ = (uρ₋/k² − a + B/2k)gain + f,
+//
+// B the second difference that β carries, for δ = φ(n+1) − φ(n). f and a stand
+// in the working memory.
+func (m *March) solveViscous(next, now, gain, before, after []float64, c, n int, t float64) {
+	s, f, a := m.s, m.rhs, m.damp
+	k := s.block.Time.Step
+	beta := stiffness{links: s.beta.row(m.w.be, c, n, t)}
+	matrix := m.viscous[c]
+	if !m.steady || !matrix.factored {
+		for i := range f {
+			matrix.diagonal[i] = s.u[i]/(k*k)*after[i] + a[i]
+		}
+		matrix.subtractLinks(beta.links, s.block.Space.Periodic, s.viscous.w[0]/(2*k))
+		if s.HeldLeft() {
+			matrix.hold(0)
+		}
+		if s.HeldRight() {
+			matrix.hold(1)
+		}
+		matrix.factor()
+	}
+	s.viscous.addForce(f, gain, beta, 0, 1/(2*k))
+	for i, u := range s.u {
+		f[i] += (u/(k*k)*before[i] - a[i]) * gain[i]
+	}
+	if s.HeldLeft() {
+		matrix.set(0, next[0]-now[0], f)
+	}
+	if last := len(f) - 1; s.HeldRight() {
+		matrix.set(1, next[last]-now[last], f)
+	}
+	matrix.solve(f)
+	for i, d := range f {
+		if !m.held(i) {
+			next[i] = now[i] + d
+		}
 	}
 }
 
@@ -177,7 +198,7 @@ func (m *March) damping(a []float64, c, n int, t float64) {
 		return
 	}
 	for i, v := range s.alpha.row(m.w.al, c, n, t) {
-		a[i] = half * line.Weight(i) * v
+		a[i] = half * s.u[i] * v
 	}
 	if line.Periodic {
 		return

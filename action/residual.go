@@ -70,7 +70,7 @@ func (s *Discrete) addLoss(dst []float64, w *scratch, v []float64, c, n int, t, 
 	line := s.block.Space
 	if !s.alpha.zero() {
 		for i, a := range s.alpha.row(w.al, c, n, t) {
-			dst[i] -= scale * line.Weight(i) * a * v[i]
+			dst[i] -= scale * s.u[i] * a * v[i]
 		}
 	}
 	if !s.beta.zero() {
@@ -154,7 +154,7 @@ func (s *Discrete) lossBand(band []float64, w *scratch, c, n int, t float64) {
 	}
 	width := s.viscous.width()
 	for i, a := range s.alpha.row(w.al, c, n, t) {
-		band[i*width+1] -= line.Weight(i) * a
+		band[i*width+1] -= s.u[i] * a
 	}
 	if line.Periodic {
 		return

@@ -1,19 +1,27 @@
 package action
 
 // A tridiagonal is a symmetric, diagonally dominant tridiagonal matrix, cyclic
-// on a ring, with its working memory. Elimination without pivoting is stable
-// for it [Golub & Van Loan 2013, Matrix Computations, §4.3].
+// on a ring, and its factors. Elimination without pivoting is stable for it
+// [Golub & Van Loan 2013, Matrix Computations, §4.3].
+//
+// Fill diagonal, then call subtractLinks, hold for known unknowns, and factor;
+// solve may then be called any number of times.
 type tridiagonal struct {
 	diagonal []float64
 	above    []float64 // entry (i, i+1); on a ring the last is (n−1, 0)
-	pivot    []float64
-	around   []float64 // solution for the column that a ring adds
+	ends     [2]float64
 	ring     bool
+	factored bool
+
+	ratio   []float64 // above over pivot
+	inverse []float64 // 1 over pivot
+	around  []float64 // solution for the column that a ring adds
+	schur   float64   // 1 over the last pivot of a ring
 }
 
 func newTridiagonal(n int) *tridiagonal {
 	row := func() []float64 { return make([]float64, n) }
-	return &tridiagonal{diagonal: row(), above: row(), pivot: row(), around: row()}
+	return &tridiagonal{diagonal: row(), above: row(), ratio: row(), inverse: row(), around: row()}
 }
 
 // subtractLinks subtracts scale times the second difference with the given link
@@ -22,6 +30,7 @@ func (m *tridiagonal) subtractLinks(links []float64, ring bool, scale float64) {
 	n := len(m.diagonal)
 	clear(m.above)
 	m.ring = ring
+	m.ends = [2]float64{}
 	for i, b := range links {
 		v := scale * b
 		j := i + 1
@@ -32,61 +41,89 @@ func (m *tridiagonal) subtractLinks(links []float64, ring bool, scale float64) {
 		m.diagonal[j] += v
 		m.above[i] -= v
 	}
+	if ring && n == 2 { // both links join the same pair
+		m.above[0] += m.above[1]
+		m.ring = false
+	}
 }
 
-// fix makes unknown i, the first or last, equal to v and moves its coupling to
-// the right-hand side f.
-func (m *tridiagonal) fix(i int, v float64, f []float64) {
-	if i == 0 {
-		f[1] -= m.above[0] * v
-		m.above[0] = 0
-	} else {
-		f[i-1] -= m.above[i-1] * v
-		m.above[i-1] = 0
+// hold makes the first or last unknown known.
+func (m *tridiagonal) hold(end int) {
+	i, link := 0, 0
+	if end == 1 {
+		i, link = len(m.diagonal)-1, len(m.diagonal)-2
 	}
-	m.diagonal[i], f[i] = 1, v
+	m.ends[end] = m.above[link]
+	m.above[link] = 0
+	m.diagonal[i] = 1
+}
+
+// set gives the first or last unknown, which is held, the value v in the
+// right-hand side f.
+func (m *tridiagonal) set(end int, v float64, f []float64) {
+	i, beside := 0, 1
+	if end == 1 {
+		i, beside = len(f)-1, len(f)-2
+	}
+	f[beside] -= m.ends[end] * v
+	f[i] = v
+}
+
+func (m *tridiagonal) factor() {
+	m.factored = true
+	n := len(m.diagonal)
+	if m.ring {
+		n--
+	}
+	pivot := m.diagonal[0]
+	for i := range n {
+		m.inverse[i] = 1 / pivot
+		if i+1 < n {
+			m.ratio[i] = m.above[i] * m.inverse[i]
+			pivot = m.diagonal[i+1] - m.ratio[i]*m.above[i]
+		}
+	}
+	if !m.ring {
+		return
+	}
+	// Split off the last unknown z: the others solve T y = f − z·q with
+	// q = (corner, 0, …, 0, side).
+	q := m.around[:n]
+	clear(q)
+	corner, side := m.above[n], m.above[n-1]
+	q[0] += corner
+	q[n-1] += side
+	m.eliminate(q)
+	m.schur = 1 / (m.diagonal[n] - corner*q[0] - side*q[n-1])
 }
 
 // solve overwrites f with the solution.
 func (m *tridiagonal) solve(f []float64) {
-	n := len(f)
 	if !m.ring {
-		m.eliminate(n, f)
+		m.eliminate(f)
 		return
 	}
-	if n == 2 { // both links join the same pair
-		a, b, c := m.diagonal[0], m.above[0]+m.above[1], m.diagonal[1]
-		det := a*c - b*b
-		f[0], f[1] = (c*f[0]-b*f[1])/det, (a*f[1]-b*f[0])/det
-		return
-	}
-	// Split off the last unknown z: the others solve T y = f − z·q with
-	// q = (corner, 0, …, 0, above[n−2]).
-	last := n - 1
-	q := m.around[:last]
-	clear(q)
-	q[0] += m.above[last]
-	q[last-1] += m.above[last-1]
-	m.eliminate(last, f[:last])
-	m.eliminate(last, q)
+	last := len(f) - 1
+	m.eliminate(f[:last])
 	corner, side := m.above[last], m.above[last-1]
-	z := (f[last] - corner*f[0] - side*f[last-1]) / (m.diagonal[last] - corner*q[0] - side*q[last-1])
-	for i := range q {
-		f[i] -= z * q[i]
+	z := (f[last] - corner*f[0] - side*f[last-1]) * m.schur
+	for i, q := range m.around[:last] {
+		f[i] -= z * q
 	}
 	f[last] = z
 }
 
-// eliminate solves with the leading n × n part.
-func (m *tridiagonal) eliminate(n int, f []float64) {
-	m.pivot[0] = m.diagonal[0]
-	for i := 1; i < n; i++ {
-		r := m.above[i-1] / m.pivot[i-1]
-		m.pivot[i] = m.diagonal[i] - r*m.above[i-1]
-		f[i] -= r * f[i-1]
+// eliminate solves with the leading part that f covers.
+func (m *tridiagonal) eliminate(f []float64) {
+	n := len(f)
+	ratio, inverse := m.ratio[:n], m.inverse[:n]
+	var carried float64
+	for i, v := range f {
+		v -= carried
+		f[i] = v * inverse[i]
+		carried = ratio[i] * v
 	}
-	f[n-1] /= m.pivot[n-1]
 	for i := n - 2; i >= 0; i-- {
-		f[i] = (f[i] - m.above[i]*f[i+1]) / m.pivot[i]
+		f[i] -= ratio[i] * f[i+1]
 	}
 }

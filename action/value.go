@@ -25,7 +25,7 @@ func (s *Discrete) Value(h *field.History) float64 {
 			sigma := s.sigma.row(w.sigma, c, n, t)
 			if c == 0 {
 				for i, x := range v {
-					u += line.Weight(i) * sigma[i] * x
+					u += s.u[i] * sigma[i] * x
 				}
 			}
 			u += s.sourceEnergy(w, phi.Component(c), c, n, t)
@@ -45,7 +45,7 @@ func (s *Discrete) Value(h *field.History) float64 {
 			var kin float64
 			for i, p := range phi.Component(c) {
 				d := after[i] + jump - p
-				kin += line.Weight(i) * rho[i] * d * d
+				kin += s.u[i] * rho[i] * d * d
 			}
 			sum += 0.5 * kin / (clock.Step * clock.Step)
 		}
@@ -57,15 +57,18 @@ func (s *Discrete) Value(h *field.History) float64 {
 func (s *Discrete) sourceEnergy(w *scratch, phi []float64, c, n int, t float64) float64 {
 	var u float64
 	for i, j := range s.source.row(w.src, c, n, t) {
-		u -= s.block.Space.Weight(i) * j * phi[i]
+		u -= s.u[i] * j * phi[i]
 	}
 	if s.block.Space.Periodic {
 		return u
 	}
-	left, right := s.fluxAt(c, n, t)
-	last := len(phi) - 1
-	for j, g := range s.elastic.end {
-		u += g * (left*phi[j] - right*phi[last-j]) / s.block.Space.Step
+	left, right := s.fluxAt(w, c, n, t)
+	last, h := len(phi)-1, s.block.Space.Step
+	for j, g := range s.elastic.flux[0] {
+		u += g * left * phi[j] / h
+	}
+	for j, g := range s.elastic.flux[1] {
+		u -= g * right * phi[last-j] / h
 	}
 	return u
 }
@@ -94,7 +97,7 @@ func (s *Discrete) Gradient(dst, h *field.History) *field.History {
 // addInertia adds u{ρ(φ(n) − φ(n−1)) − ρ(φ(n+1) − φ(n))}/k² to d, with the time
 // jump if jumps is set.
 func (s *Discrete) addInertia(d []float64, w *scratch, h *field.History, c, n int, jumps bool) {
-	clock, line := s.block.Time, s.block.Space
+	clock := s.block.Time
 	before, after := s.rhoAround(w, c, n)
 	phi := h.Slice(n).Component(c)
 	kk := 1 / (clock.Step * clock.Step)
@@ -105,7 +108,7 @@ func (s *Discrete) addInertia(d []float64, w *scratch, h *field.History, c, n in
 		}
 		other := h.Slice(m).Component(c)
 		for i, p := range phi {
-			d[i] += line.Weight(i) * kk * rho[i] * (p - other[i] - jump)
+			d[i] += s.u[i] * kk * rho[i] * (p - other[i] - jump)
 		}
 	}
 	switch {

@@ -46,9 +46,8 @@ func (s *Discrete) curve(dst field.Slice, w *scratch, phi, eta field.Slice, t fl
 // jump.
 func (s *Discrete) addLinearForce(dst []float64, w *scratch, eta, slope []float64, c, n int, t, scale float64) {
 	s.elastic.addForce(dst, eta, s.kappaAt(w, c, n, t), 0, scale)
-	line := s.block.Space
 	for i, sigma := range s.sigma.row(w.sigma, c, n, t) {
-		dst[i] -= scale * line.Weight(i) * sigma * slope[i]
+		dst[i] -= scale * s.u[i] * sigma * slope[i]
 	}
 }
 
@@ -84,7 +83,7 @@ func (s *Discrete) SecondVariationMatrix(dst *Matrix, h *field.History) *Matrix 
 // inertiaRow adds the time links of event (n, i) to the row being written.
 func (s *Discrete) inertiaRow(m *Matrix, h *field.History, c, n, i int, before, after float64) {
 	clock := s.block.Time
-	u := s.block.Space.Weight(i) / (clock.Step * clock.Step)
+	u := s.u[i] / (clock.Step * clock.Step)
 	last := clock.Sites - 1
 	self := h.Index(n, c, i)
 	link := func(to int, rho float64) {
@@ -119,7 +118,7 @@ func (s *Discrete) forceRow(m *Matrix, w *scratch, h *field.History, band []floa
 		}
 		m.add(h.Index(n, c, j), scale*band[i*width+off+r])
 	}
-	u := scale * s.block.Space.Weight(i) * sigma
+	u := scale * s.u[i] * sigma
 	for b := range s.wave.Components {
 		m.add(h.Index(n, b, i), -u*w.curve.Component(c*s.wave.Components + b)[i])
 	}
