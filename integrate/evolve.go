@@ -25,7 +25,7 @@ type Settings struct {
 
 	// Second is slice 1 of the block, instead of the one made from the rate of
 	// the start: leapfrog from two slices. The rate of the start then serves
-	// the energy of slice 0 only.
+	// the energy of slice 0 only. At held ends it must have their values.
 	Second field.Slice
 
 	// Resume continues from a checkpoint of the same method and action; the
@@ -101,13 +101,11 @@ func check(s *action.Discrete, start field.State, set Settings) error {
 	if s.Density().Signature == action.Euclidean {
 		return errors.New("integrate: evolution of a Euclidean density; want a Lorentzian one, or a solver of package minimize")
 	}
-	if !set.Second.Empty() {
-		if err := set.Second.Check(); err != nil {
-			return fmt.Errorf("integrate: second slice: %w", err)
-		}
-		if !set.Second.SameShape(start.Field) {
-			return fmt.Errorf("integrate: second slice of %d components × %d sites after a start of %d × %d", set.Second.Components, set.Second.Sites, start.Field.Components, start.Field.Sites)
-		}
+	if (set.Ends.Left != nil && !s.HeldLeft()) || (set.Ends.Right != nil && !s.HeldRight()) {
+		return errors.New("integrate: value prescribed at an end that is not held; want a Held end, or a flux of the density")
+	}
+	if err := checkSecond(s, start.Field, set); err != nil {
+		return err
 	}
 	for k, o := range set.Observers {
 		if o == nil {
@@ -117,10 +115,35 @@ func check(s *action.Discrete, start field.State, set Settings) error {
 	if r := set.Resume; r != nil && (r.Slice < 0 || r.Slice >= s.Block().Slices()) {
 		return fmt.Errorf("integrate: checkpoint at slice %d of a block of %d", r.Slice, s.Block().Slices())
 	}
-	if (set.Ends.Left != nil && !s.HeldLeft()) || (set.Ends.Right != nil && !s.HeldRight()) {
-		return errors.New("integrate: value prescribed at an end that is not held; want a Held end, or a flux of the density")
-	}
 	return stable(s, start.Field, set.Method)
+}
+
+// checkSecond returns an error unless the second slice, if there is one, fits
+// the start and the held ends.
+func checkSecond(s *action.Discrete, start field.Slice, set Settings) error {
+	second := set.Second
+	if second.Empty() {
+		return nil
+	}
+	if err := second.Check(); err != nil {
+		return fmt.Errorf("integrate: second slice: %w", err)
+	}
+	if !second.SameShape(start) {
+		return fmt.Errorf("integrate: second slice of %d components × %d sites after a start of %d × %d", second.Components, second.Sites, start.Components, start.Sites)
+	}
+	placed := second.Clone()
+	p := Problem{Action: s, Start: field.AtRest(start), Ends: set.Ends}
+	p.place(placed, s.Block().Time.At(1))
+	last := second.Sites - 1
+	for c := range second.Components {
+		for k, i := range [2]int{0, last} {
+			const rounding = 1e-9 // of a value computed in another way
+			if got, want := second.At(c, i), placed.At(c, i); math.Abs(got-want) > rounding*(1+math.Abs(want)) {
+				return fmt.Errorf("integrate: second slice: held %s end is %v; want %v", [...]string{"left", "right"}[k], got, want)
+			}
+		}
+	}
+	return nil
 }
 
 // stable returns *Unstable if the step is above the limit. At the limit itself

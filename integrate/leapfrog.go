@@ -33,13 +33,15 @@ func (Leapfrog) Start(p Problem) (Stepper, error) {
 	l.p.place(l.now, clock.At(l.n))
 	l.next.CopyFrom(l.now)
 	l.p.place(l.next, clock.At(l.n+1))
+	rate := p.Start.Rate.Clone()
+	l.p.placeRate(rate, clock.At(l.n))
 	if p.Second.Empty() {
-		l.march.Start(l.next, field.State{Field: l.now, Rate: p.Start.Rate}, l.n)
+		l.march.Start(l.next, field.State{Field: l.now, Rate: rate}, l.n)
 	} else {
 		l.next.CopyFrom(p.Second)
 	}
 	l.before.CopyFrom(l.next)
-	l.before.Axpy(-2*clock.Step, p.Start.Rate)
+	l.before.Axpy(-2*clock.Step, rate)
 	return l, nil
 }
 

@@ -49,7 +49,9 @@ type Problem struct {
 }
 
 // Ends gives the values of held ends as functions of time, for one component
-// each; nil keeps the value of the start.
+// each; nil keeps the value of the start. They are also called a step before the
+// first slice and after the last, for the rates of the ends, which are central
+// differences and replace those of the start.
 type Ends struct {
 	Left, Right func(component int, t float64) float64
 }

@@ -19,6 +19,8 @@ type Observer interface {
 }
 
 // Stop is returned by an observer to end a run that has done its work.
+//
+//lint:ignore ST1012 it asks for something, as fs.SkipAll does
 var Stop = errors.New("stop asked for")
 
 // A Moment is a run at one slice. Its slices share memory with the run and are
