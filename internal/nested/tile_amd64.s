@@ -1,0 +1,257 @@
+// Kernels for tile.go, written by hand. A sliver row is 16 float64, 128 bytes.
+
+//go:build !noasm
+
+#include "textflag.h"
+
+// func features() (ebx7, ecx1, xcr0 uint32)
+TEXT ·features(SB), NOSPLIT, $0-12
+	MOVL $0, ebx7+0(FP)
+	MOVL $0, ecx1+4(FP)
+	MOVL $0, xcr0+8(FP)
+	XORL AX, AX
+	CPUID
+	CMPL AX, $7
+	JLT  done
+	MOVL $1, AX
+	XORL CX, CX
+	CPUID
+	MOVL CX, ecx1+4(FP)
+	TESTL $(1<<27), CX // OSXSAVE: XGETBV may be executed
+	JZ   done
+	XORL CX, CX
+	XGETBV
+	MOVL AX, xcr0+8(FP)
+	MOVL $7, AX
+	XORL CX, CX
+	CPUID
+	MOVL BX, ebx7+0(FP)
+
+done:
+	RET
+
+// func tile8x16AVX512(k int, a, b, c *float64, ldc int)
+TEXT ·tile8x16AVX512(SB), NOSPLIT, $0-40
+	MOVQ k+0(FP), CX
+	MOVQ a+8(FP), SI
+	MOVQ b+16(FP), DI
+	MOVQ c+24(FP), DX
+	MOVQ ldc+32(FP), R8
+	SHLQ $3, R8
+	VPXORQ Z0, Z0, Z0
+	VPXORQ Z1, Z1, Z1
+	VPXORQ Z2, Z2, Z2
+	VPXORQ Z3, Z3, Z3
+	VPXORQ Z4, Z4, Z4
+	VPXORQ Z5, Z5, Z5
+	VPXORQ Z6, Z6, Z6
+	VPXORQ Z7, Z7, Z7
+	VPXORQ Z8, Z8, Z8
+	VPXORQ Z9, Z9, Z9
+	VPXORQ Z10, Z10, Z10
+	VPXORQ Z11, Z11, Z11
+	VPXORQ Z12, Z12, Z12
+	VPXORQ Z13, Z13, Z13
+	VPXORQ Z14, Z14, Z14
+	VPXORQ Z15, Z15, Z15
+	TESTQ CX, CX
+	JLE   store
+
+#define STEP(i, lo, hi) \
+	VBROADCASTSD (8*i)(SI), Z18 \
+	VFMADD231PD Z16, Z18, lo    \
+	VFMADD231PD Z17, Z18, hi
+
+loop:
+	VMOVUPD (DI), Z16
+	VMOVUPD 64(DI), Z17
+	STEP(0, Z0, Z1)
+	STEP(1, Z2, Z3)
+	STEP(2, Z4, Z5)
+	STEP(3, Z6, Z7)
+	STEP(4, Z8, Z9)
+	STEP(5, Z10, Z11)
+	STEP(6, Z12, Z13)
+	STEP(7, Z14, Z15)
+	ADDQ $128, SI
+	ADDQ $128, DI
+	DECQ CX
+	JNZ  loop
+
+#define STORE(lo, hi) \
+	VMOVUPD (DX), Z16    \
+	VMOVUPD 64(DX), Z17  \
+	VSUBPD  lo, Z16, Z16 \
+	VSUBPD  hi, Z17, Z17 \
+	VMOVUPD Z16, (DX)    \
+	VMOVUPD Z17, 64(DX)  \
+	ADDQ    R8, DX
+
+store:
+	STORE(Z0, Z1)
+	STORE(Z2, Z3)
+	STORE(Z4, Z5)
+	STORE(Z6, Z7)
+	STORE(Z8, Z9)
+	STORE(Z10, Z11)
+	STORE(Z12, Z13)
+	STORE(Z14, Z15)
+	VZEROUPPER
+	RET
+
+// func tile4x8AVX2(k int, a, b, c *float64, ldc int)
+TEXT ·tile4x8AVX2(SB), NOSPLIT, $0-40
+	MOVQ k+0(FP), CX
+	MOVQ a+8(FP), SI
+	MOVQ b+16(FP), DI
+	MOVQ c+24(FP), DX
+	MOVQ ldc+32(FP), R8
+	SHLQ $3, R8
+	VXORPD Y0, Y0, Y0
+	VXORPD Y1, Y1, Y1
+	VXORPD Y2, Y2, Y2
+	VXORPD Y3, Y3, Y3
+	VXORPD Y4, Y4, Y4
+	VXORPD Y5, Y5, Y5
+	VXORPD Y6, Y6, Y6
+	VXORPD Y7, Y7, Y7
+	TESTQ CX, CX
+	JLE   store4
+
+#define STEP4(i, lo, hi) \
+	VBROADCASTSD (8*i)(SI), Y10 \
+	VFMADD231PD Y8, Y10, lo     \
+	VFMADD231PD Y9, Y10, hi
+
+loop4:
+	VMOVUPD (DI), Y8
+	VMOVUPD 32(DI), Y9
+	STEP4(0, Y0, Y1)
+	STEP4(1, Y2, Y3)
+	STEP4(2, Y4, Y5)
+	STEP4(3, Y6, Y7)
+	ADDQ $128, SI
+	ADDQ $128, DI
+	DECQ CX
+	JNZ  loop4
+
+#define STORE4(lo, hi) \
+	VMOVUPD (DX), Y8   \
+	VMOVUPD 32(DX), Y9 \
+	VSUBPD  lo, Y8, Y8 \
+	VSUBPD  hi, Y9, Y9 \
+	VMOVUPD Y8, (DX)   \
+	VMOVUPD Y9, 32(DX) \
+	ADDQ    R8, DX
+
+store4:
+	STORE4(Y0, Y1)
+	STORE4(Y2, Y3)
+	STORE4(Y4, Y5)
+	STORE4(Y6, Y7)
+	VZEROUPPER
+	RET
+
+// func tile1x16AVX2(k int, a, b, c *float64)
+TEXT ·tile1x16AVX2(SB), NOSPLIT, $0-32
+	MOVQ k+0(FP), CX
+	MOVQ a+8(FP), SI
+	MOVQ b+16(FP), DI
+	MOVQ c+24(FP), DX
+	VXORPD Y0, Y0, Y0
+	VXORPD Y1, Y1, Y1
+	VXORPD Y2, Y2, Y2
+	VXORPD Y3, Y3, Y3
+	TESTQ CX, CX
+	JLE   store1
+
+loop1:
+	VBROADCASTSD (SI), Y4
+	VFMADD231PD (DI), Y4, Y0
+	VFMADD231PD 32(DI), Y4, Y1
+	VFMADD231PD 64(DI), Y4, Y2
+	VFMADD231PD 96(DI), Y4, Y3
+	ADDQ $128, SI
+	ADDQ $128, DI
+	DECQ CX
+	JNZ  loop1
+
+store1:
+	VMOVUPD (DX), Y4
+	VMOVUPD 32(DX), Y5
+	VMOVUPD 64(DX), Y6
+	VMOVUPD 96(DX), Y7
+	VSUBPD  Y0, Y4, Y4
+	VSUBPD  Y1, Y5, Y5
+	VSUBPD  Y2, Y6, Y6
+	VSUBPD  Y3, Y7, Y7
+	VMOVUPD Y4, (DX)
+	VMOVUPD Y5, 32(DX)
+	VMOVUPD Y6, 64(DX)
+	VMOVUPD Y7, 96(DX)
+	VZEROUPPER
+	RET
+
+// func solve16AVX2(n int, u, inv, x *float64)
+//
+// R9 walks down the rows of x, R10 across the columns of u; the inner loop
+// restarts at the first row each time.
+TEXT ·solve16AVX2(SB), NOSPLIT, $0-32
+	MOVQ n+0(FP), CX
+	MOVQ u+8(FP), R10
+	MOVQ inv+16(FP), R11
+	MOVQ x+24(FP), DI
+	MOVQ DI, R9
+	XORQ BX, BX
+
+row:
+	CMPQ BX, CX
+	JGE  finish
+	VXORPD Y0, Y0, Y0
+	VXORPD Y1, Y1, Y1
+	VXORPD Y2, Y2, Y2
+	VXORPD Y3, Y3, Y3
+	MOVQ R10, SI
+	MOVQ DI, R8
+	MOVQ BX, AX
+	TESTQ AX, AX
+	JZ   scale
+
+above:
+	VBROADCASTSD (SI), Y4
+	VFMADD231PD (R8), Y4, Y0
+	VFMADD231PD 32(R8), Y4, Y1
+	VFMADD231PD 64(R8), Y4, Y2
+	VFMADD231PD 96(R8), Y4, Y3
+	ADDQ $128, SI
+	ADDQ $128, R8
+	DECQ AX
+	JNZ  above
+
+scale:
+	VBROADCASTSD (R11), Y8
+	VMOVUPD (R9), Y4
+	VMOVUPD 32(R9), Y5
+	VMOVUPD 64(R9), Y6
+	VMOVUPD 96(R9), Y7
+	VSUBPD  Y0, Y4, Y4
+	VSUBPD  Y1, Y5, Y5
+	VSUBPD  Y2, Y6, Y6
+	VSUBPD  Y3, Y7, Y7
+	VMULPD  Y8, Y4, Y4
+	VMULPD  Y8, Y5, Y5
+	VMULPD  Y8, Y6, Y6
+	VMULPD  Y8, Y7, Y7
+	VMOVUPD Y4, (R9)
+	VMOVUPD Y5, 32(R9)
+	VMOVUPD Y6, 64(R9)
+	VMOVUPD Y7, 96(R9)
+	ADDQ $8, R10
+	ADDQ $8, R11
+	ADDQ $128, R9
+	INCQ BX
+	JMP  row
+
+finish:
+	VZEROUPPER
+	RET
