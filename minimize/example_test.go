@@ -1,0 +1,84 @@
+package minimize_test
+
+import (
+	"context"
+	"fmt"
+	"math"
+
+	"github.com/tenter-go/tenter/action"
+	"github.com/tenter-go/tenter/constraint"
+	"github.com/tenter-go/tenter/field"
+	"github.com/tenter-go/tenter/lattice"
+	"github.com/tenter-go/tenter/minimize"
+)
+
+// A fluxon at rest at t = 0 that is asked to pass x = 1 at t = 3, which it would
+// not do by itself: the field equation has to give way.
+func ExampleLeastResidual() {
+	block, err := lattice.NewBlock(
+		lattice.Axis{Step: 0.1, Sites: 41},
+		lattice.Axis{From: -5, Step: 0.2, Sites: 51},
+	)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	s, err := action.New(block, action.Wave{Potential: action.SineGordon{}})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	kink, err := field.SineGordonKink(field.Moving{})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	first := kink.On(block.Space, 0).Field
+
+	held := constraint.On(block)
+	held.Slice(0, first)
+	held.Slice(1, first)
+	held.Event(3, 1, math.Pi)
+	found, err := minimize.LeastResidual(context.Background(), s, held, field.Repeat(block, first), nil)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	r := found.Report
+	fmt.Printf("%v: %d equations, %d unknowns\n", r.Status, r.Rows, r.Unknowns)
+	fmt.Printf("%s, largest %.2f\n", r.Reason, r.After.Max)
+	// Output:
+	// converged: 1989 equations, 1988 unknowns
+	// gradient of the cost vanishes, the conditions leave a residual, largest 0.65
+}
+
+// The soap film of −Δu = 1 over a square, in one Newton step.
+func ExampleMinimum() {
+	side := lattice.Axis{Step: 1. / 32, Sites: 33}
+	block, err := lattice.NewBlock(side, side)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	s, err := action.New(block, action.Wave{Signature: action.Euclidean, Source: action.Uniform(1)})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	zero := func(float64) float64 { return 0 }
+	held := constraint.On(block)
+	held.Slice(0, field.NewSlice(1, 33))
+	held.Slice(32, field.NewSlice(1, 33))
+	held.Left(zero)
+	held.Right(zero)
+	found, err := minimize.Minimum(context.Background(), s, held, field.NewHistory(block, 1), nil)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	fmt.Printf("%s, %d step\n", found.Report.Method, found.Report.Iterations)
+	fmt.Printf("u at the centre: %.4f\n", found.History.At(16, 0, 16))
+	// Output:
+	// damped Newton, banded Cholesky, 1 step
+	// u at the centre: 0.0736
+}
