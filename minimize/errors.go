@@ -33,13 +33,13 @@ func (e *Refusal) Unwrap() error { return e.Cause }
 // A TooLarge is the error of a factorisation that exceeds a limit of the
 // settings.
 type TooLarge struct {
-	Unknowns, Band      int
+	Unknowns, Front     int // unknowns, and of them in the largest front
 	Bytes, Flops        float64
 	Memory, Work        float64 // the limits
 	problem, suggestion string
 }
 
 func (e *TooLarge) Error() string {
-	return fmt.Sprintf("minimize: %s: factor of %d unknowns in a band of %d needs %.2g bytes and %.2g operations, above the limits of %.2g and %.2g; %s",
-		e.problem, e.Unknowns, e.Band, e.Bytes, e.Flops, e.Memory, e.Work, e.suggestion)
+	return fmt.Sprintf("minimize: %s: factor of %d unknowns with a front of %d needs %.2g bytes and %.2g operations, above the limits of %.2g and %.2g; %s",
+		e.problem, e.Unknowns, e.Front, e.Bytes, e.Flops, e.Memory, e.Work, e.suggestion)
 }

@@ -79,6 +79,6 @@ func ExampleMinimum() {
 	fmt.Printf("%s, %d step\n", found.Report.Method, found.Report.Iterations)
 	fmt.Printf("u at the centre: %.4f\n", found.History.At(16, 0, 16))
 	// Output:
-	// damped Newton, banded Cholesky, 1 step
+	// damped Newton, nested-dissection Cholesky, 1 step
 	// u at the centre: 0.0736
 }

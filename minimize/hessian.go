@@ -5,7 +5,7 @@ import (
 
 	"github.com/tenter-go/tenter/action"
 	"github.com/tenter-go/tenter/constraint"
-	"github.com/tenter-go/tenter/internal/banded"
+	"github.com/tenter-go/tenter/internal/nested"
 )
 
 // hessian assembles the second variation by the unknowns, from that by all
@@ -14,14 +14,14 @@ import (
 type hessian struct {
 	entry    []int32 // entries of the full matrix that count
 	place    []int32 // where each goes among the values
-	pattern  *banded.Pattern
+	pattern  *nested.Pattern
 	values   []float64
 	diagonal []int
 }
 
 // newHessian analyses the second variation m, whose pattern does not change.
 // grid has the unknowns and their coordinates and gets its entries.
-func newHessian(m *action.Matrix, free *constraint.Unknowns, grid *banded.Pattern) *hessian {
+func newHessian(m *action.Matrix, free *constraint.Unknowns, grid *nested.Pattern) *hessian {
 	h := &hessian{pattern: grid}
 	below := make([][]int32, grid.N)
 	each := func(do func(entry int, u, v int32)) {

@@ -90,7 +90,7 @@ func newLeast(p *problem) (*least, error) {
 	l.damped = make([]float64, len(l.normal.values))
 	l.sum = l.squares(l.res.Data, rows)
 	p.rep.Rows = len(rows)
-	p.rep.Method = fmt.Sprintf("Levenberg–Marquardt, banded Cholesky, q = %g", p.set.ResidualScale)
+	p.rep.Method = fmt.Sprintf("Levenberg–Marquardt, nested-dissection Cholesky, q = %g", p.set.ResidualScale)
 	p.rep.Push = "∂cost/∂φ at the event, the multiplier of the pin"
 	return l, nil
 }

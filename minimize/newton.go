@@ -9,7 +9,7 @@ import (
 // newton runs damped Newton steps until the gradient is within the tolerance,
 // then corrections with the undamped factor of the solution.
 func (m *minimum) newton(ctx context.Context) (*Found, error) {
-	m.rep.Method = "damped Newton, banded Cholesky"
+	m.rep.Method = "damped Newton, nested-dissection Cholesky"
 	m.delta, m.damped = make([]float64, m.free.N), make([]float64, len(m.hess.values))
 	limit := m.set.Iterations
 	if limit == 0 {

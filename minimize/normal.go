@@ -5,7 +5,7 @@ import (
 
 	"github.com/tenter-go/tenter/action"
 	"github.com/tenter-go/tenter/constraint"
-	"github.com/tenter-go/tenter/internal/banded"
+	"github.com/tenter-go/tenter/internal/nested"
 )
 
 // normal assembles the normal matrix JᵀJ of the residual by the unknowns.
@@ -22,7 +22,7 @@ type normal struct {
 	reach []int32 // unknowns of the rows, those of a row ascending
 	place []int32 // for each row, the products of slots (a, b), b ≤ a
 
-	pattern  *banded.Pattern
+	pattern  *nested.Pattern
 	values   []float64
 	diagonal []int // places of the diagonal
 	buffer   []float64
@@ -30,7 +30,7 @@ type normal struct {
 
 // newNormal analyses the Jacobian j, whose pattern does not change, for the
 // given rows. grid has the unknowns and their coordinates and gets its entries.
-func newNormal(j *action.Matrix, rows []int32, free *constraint.Unknowns, grid *banded.Pattern) *normal {
+func newNormal(j *action.Matrix, rows []int32, free *constraint.Unknowns, grid *nested.Pattern) *normal {
 	m := &normal{rows: rows, first: make([]int32, 1, len(rows)+1), pattern: grid}
 	for _, r := range rows {
 		columns, _ := j.Row(int(r))

@@ -1,7 +1,6 @@
 package minimize
 
 import (
-	"errors"
 	"fmt"
 	"math"
 	"slices"
@@ -10,22 +9,9 @@ import (
 	"github.com/tenter-go/tenter/action"
 	"github.com/tenter-go/tenter/constraint"
 	"github.com/tenter-go/tenter/field"
-	"github.com/tenter-go/tenter/internal/banded"
+	"github.com/tenter-go/tenter/internal/nested"
 	"github.com/tenter-go/tenter/lattice"
 )
-
-// A factoriser solves linear systems with a symmetric positive definite matrix
-// of one pattern. It is the only seam between this package and linear solvers:
-// the caller numbers the unknowns, says where on the grid each lives, adds up the
-// values entry by entry at Pattern.Place, and hands them over.
-type factoriser interface {
-	// Factor factorises the matrix with the given values of the lower triangle.
-	// An error of type *banded.NotPositive names the failing pivot.
-	Factor(values []float64) error
-	// Solve writes the solution for the right-hand side b to dst, which may be
-	// b.
-	Solve(dst, b []float64)
-}
 
 // A problem is what every solve starts from: the action, what is free, and the
 // best history so far.
@@ -97,27 +83,10 @@ func describe(b lattice.Block) string {
 	return "slices " + axis(b.Time) + " × sites " + axis(b.Space)
 }
 
-// factoriser returns the factoriser of a pattern, or a *TooLarge.
-func (p *problem) factoriser(pattern *banded.Pattern, suggestion string) (factoriser, error) {
-	f, err := banded.New(pattern)
-	if err != nil {
-		return nil, err
-	}
-	bytes, flops := f.Size()
-	if bytes > p.set.Memory || flops > p.set.Work {
-		return nil, &TooLarge{
-			Unknowns: pattern.N, Band: f.Width(), Bytes: bytes, Flops: flops, Memory: p.set.Memory, Work: p.set.Work,
-			problem: p.rep.Problem, suggestion: suggestion,
-		}
-	}
-	p.rep.Band = f.Width()
-	return f, nil
-}
-
 // grid puts the unknowns on the grid of slices and sites.
-func (p *problem) grid() *banded.Pattern {
+func (p *problem) grid() *nested.Pattern {
 	b := p.s.Block()
-	g := &banded.Pattern{
+	g := &nested.Pattern{
 		N: p.free.N, Row: make([]int32, p.free.N), Col: make([]int32, p.free.N),
 		Rows: b.Slices(), Cols: b.Sites(), WrapRow: b.Time.Periodic, WrapCol: b.Space.Periodic,
 	}
@@ -220,16 +189,6 @@ func (p *problem) scale(m *action.Matrix, r []float64, rows []int32) float64 {
 		return inside
 	}
 	return around
-}
-
-// singular says where a factorisation failed.
-func (p *problem) singular(err error) string {
-	var bad *banded.NotPositive
-	if !errors.As(err, &bad) {
-		return err.Error()
-	}
-	_, c, _, at := p.free.Event(p.free.Lead(bad.Unknown))
-	return fmt.Sprintf("matrix is not positive definite: pivot %.3g of component %d at %v", bad.Pivot, c, at)
 }
 
 func abs(n int) int { return max(n, -n) }

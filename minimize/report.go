@@ -80,7 +80,7 @@ type Report struct {
 	Accepted       int // of them, those that improved the history
 	Corrections    int // final corrections with the factor at hand
 	Factorisations int
-	Band           int     // half-width of the band; 0 without a factorisation
+	Front          int     // order of the largest front; 0 without a factorisation
 	Damping        float64 // last λ
 	Wall           time.Duration
 
@@ -127,8 +127,8 @@ func (r Report) String() string {
 	}
 	fmt.Fprintf(&b, "  %-8s  %.10g → %.10g\n", cost, r.CostBefore, r.CostAfter)
 	fmt.Fprintf(&b, "  work      %d steps, %d accepted, %d corrections, %d factorisations", r.Iterations, r.Accepted, r.Corrections, r.Factorisations)
-	if r.Band > 0 {
-		fmt.Fprintf(&b, " (band %d)", r.Band)
+	if r.Front > 0 {
+		fmt.Fprintf(&b, " (largest front %d)", r.Front)
 	}
 	fmt.Fprintf(&b, ", %.3g s\n", r.Wall.Seconds())
 	fmt.Fprintf(&b, "  reactions %s", r.Push)

@@ -15,7 +15,7 @@ type Method uint8
 // The methods of Minimum.
 const (
 	Auto   Method = iota // Newton if the factor fits Memory and Work, else LBFGS
-	Newton               // damped Newton with a banded Cholesky factorisation
+	Newton               // damped Newton with a Cholesky factorisation by nested dissection
 	LBFGS                // limited-memory BFGS without a factorisation
 )
 

@@ -3,6 +3,7 @@ package nested
 import (
 	"fmt"
 	"math"
+	"slices"
 )
 
 // Pattern says which entries of a symmetric matrix may differ from zero, and
@@ -88,4 +89,14 @@ func (p *Pattern) check() error {
 		seen[i] = true
 	}
 	return nil
+}
+
+// Place returns where among the values entry (i, j), j ≤ i, stands, or −1 if the
+// pattern does not have it.
+func (p *Pattern) Place(i, j int) int {
+	row := p.Adj[p.Ptr[i]:p.Ptr[i+1]]
+	if k, found := slices.BinarySearch(row, int32(j)); found {
+		return p.Ptr[i] + k
+	}
+	return -1
 }
