@@ -43,10 +43,9 @@
 //
 // # Size and time
 //
-// Linear systems are factorised in a band, whose half-width is twice the shorter
-// side of the block for the least residual and once for a minimum, and four and
-// two times on a ring or a periodic clock along the longer side. A block of 100
-// slices and 400 sites takes a few tenths of a second for each factorisation, and
-// a cold start over eight units of time of a sine-Gordon collision about twenty of
+// Linear systems are factorised exactly by nested dissection of the grid, in
+// O(N^1.5) operations and O(N log N) memory for N events. A block of 100 slices
+// and 400 sites takes a few hundredths of a second for each factorisation, and a
+// cold start over eight units of time of a sine-Gordon collision about twenty of
 // them. Much longer blocks need a start that knows more than the first slice.
 package minimize
