@@ -36,6 +36,9 @@ func (s *Discrete) Components() int { return s.wave.Components }
 // Density returns the density with its defaults filled in.
 func (s *Discrete) Density() Wave { return s.wave }
 
+// Signature returns whether the action is of T − U or T + U.
+func (s *Discrete) Signature() Signature { return s.wave.Signature }
+
 // Conservative returns nil if the equation is the condition that the action be
 // stationary, and a *NoActionError if it has losses or open ends.
 func (s *Discrete) Conservative() error {

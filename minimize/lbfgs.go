@@ -25,11 +25,11 @@ func (m *minimum) lbfgs(ctx context.Context) (*Found, error) {
 	problem := optimize.Problem{
 		Func: func(x []float64) float64 {
 			m.free.Scatter(m.trial, x)
-			return m.s.Value(m.trial)
+			return m.f.Value(m.trial)
 		},
 		Grad: func(grad, x []float64) {
 			m.free.Scatter(m.trial, x)
-			m.trialSlope = m.s.Gradient(m.trialSlope, m.trial)
+			m.trialSlope = m.f.Gradient(m.trialSlope, m.trial)
 			m.free.Reduce(grad, m.trialSlope)
 		},
 		Status: func() (optimize.Status, error) {
@@ -50,8 +50,8 @@ func (m *minimum) lbfgs(ctx context.Context) (*Found, error) {
 	}
 	// The best history so far stands in the result, whatever the error.
 	m.free.Scatter(m.trial, result.X)
-	if value := m.s.Value(m.trial); value <= m.value {
-		m.trialSlope = m.s.Gradient(m.trialSlope, m.trial)
+	if value := m.f.Value(m.trial); value <= m.value {
+		m.trialSlope = m.f.Gradient(m.trialSlope, m.trial)
 		m.free.Reduce(m.trialGrad, m.trialSlope)
 		m.accept(value)
 	}

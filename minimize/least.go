@@ -44,11 +44,11 @@ import (
 // error is a *NotConverged; Found then holds the best history. The push of a
 // reaction is the multiplier ∂C/∂φ(E).
 func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set, start *field.History, set *Settings) (*Found, error) {
-	p, err := newProblem(problemResidual, s, held, start, set)
+	p, err := newProblem(problemResidual, given(s), held, start, set)
 	if err != nil {
 		return nil, err
 	}
-	l, err := newLeast(p)
+	l, err := newLeast(p, s)
 	if err != nil {
 		return nil, err
 	}
@@ -58,6 +58,7 @@ func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 // least is a least-residual problem being solved.
 type least struct {
 	*problem
+	s             *action.Discrete
 	jac           *action.Matrix
 	normal        *normal
 	solver        factoriser
@@ -68,18 +69,18 @@ type least struct {
 	sum           float64        // Σ r²
 }
 
-func newLeast(p *problem) (*least, error) {
-	rows, err := p.rows()
+func newLeast(p *problem, s *action.Discrete) (*least, error) {
+	l := &least{problem: p, s: s}
+	rows, err := l.rows()
 	if err != nil {
 		return nil, err
 	}
-	l := &least{problem: p}
-	l.res = p.s.Residual(nil, p.h)
+	l.res = s.Residual(nil, p.h)
 	if n := p.norm(l.res.Data, rows); math.IsNaN(n.Max-n.Max) || math.IsInf(l.squares(l.res.Data, rows), 0) {
 		return nil, fmt.Errorf("minimize: residual of the start history is %v at %v; want a start for which the equation can be evaluated", n.Max, n.At)
 	}
 	l.trialRes = l.res.Clone()
-	l.jac = p.s.ResidualJacobian(nil, p.h)
+	l.jac = s.ResidualJacobian(nil, p.h)
 	l.normal = newNormal(l.jac, rows, p.free, p.grid())
 	if l.solver, err = p.factoriser(l.normal.pattern, "want a smaller block or higher limits in the settings"); err != nil {
 		return nil, err
@@ -96,28 +97,28 @@ func newLeast(p *problem) (*least, error) {
 }
 
 // rows returns the events with a field equation that is not lifted.
-func (p *problem) rows() ([]int32, error) {
-	b := p.s.Block()
+func (l *least) rows() ([]int32, error) {
+	b := l.s.Block()
 	lifted := make(map[int]bool)
-	for _, at := range p.set.Lifted {
+	for _, at := range l.set.Lifted {
 		n, i, err := b.Index(at)
 		if err != nil {
 			return nil, fmt.Errorf("minimize: lifted row: %w", err)
 		}
-		if !p.equation(n, i) {
+		if !l.equation(n, i) {
 			return nil, fmt.Errorf("minimize: lifted row at %v, where there is no field equation; want an event of an interior slice", at)
 		}
-		for c := range p.h.Components {
-			e := p.h.Index(n, c, i)
-			if k, _ := p.free.At(e); k >= 0 {
+		for c := range l.h.Components {
+			e := l.h.Index(n, c, i)
+			if k, _ := l.free.At(e); k >= 0 {
 				return nil, fmt.Errorf("minimize: lifted row at %v, where component %d is free; want a pinned event", at, c)
 			}
 			lifted[e] = true
 		}
 	}
 	var rows []int32
-	for e := range p.h.Data {
-		if n, _, i := p.h.Place(e); p.equation(n, i) && !lifted[e] {
+	for e := range l.h.Data {
+		if n, _, i := l.h.Place(e); l.equation(n, i) && !lifted[e] {
 			rows = append(rows, int32(e))
 		}
 	}
@@ -128,8 +129,8 @@ func (p *problem) rows() ([]int32, error) {
 }
 
 // equation reports whether event (n, i) has a field equation.
-func (p *problem) equation(n, i int) bool {
-	return p.s.Interior(n) && !(i == 0 && p.s.HeldLeft()) && !(i == p.h.Block.Sites()-1 && p.s.HeldRight())
+func (l *least) equation(n, i int) bool {
+	return l.s.Interior(n) && !(i == 0 && l.s.HeldLeft()) && !(i == l.h.Block.Sites()-1 && l.s.HeldRight())
 }
 
 func (l *least) squares(r []float64, rows []int32) float64 {

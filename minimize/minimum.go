@@ -36,18 +36,20 @@ import (
 // moved at no cost, and one more condition, such as a pin at the centre of a
 // kink, is wanted. The push of a reaction is −∂S/∂φ(E), the impulse that a source
 // at E would need to hold the field there.
-func Minimum(ctx context.Context, s *action.Discrete, held *constraint.Set, start *field.History, set *Settings) (*Found, error) {
-	if s != nil {
-		if err := s.Conservative(); err != nil {
-			var part *action.NoActionError
-			errors.As(err, &part)
-			return nil, &Refusal{Problem: problemMinimum, Why: part.Part + " does not come from an action; ask for the least residual", Cause: err}
+func Minimum(ctx context.Context, f Functional, held *constraint.Set, start *field.History, set *Settings) (*Found, error) {
+	if f = given(f); f != nil {
+		if err := f.Conservative(); err != nil {
+			why := err.Error()
+			if part := (*action.NoActionError)(nil); errors.As(err, &part) {
+				why = part.Part + " does not come from an action; ask for the least residual"
+			}
+			return nil, &Refusal{Problem: problemMinimum, Why: why, Cause: err}
 		}
-		if s.Density().Signature != action.Euclidean {
+		if g, ok := f.(signed); ok && g.Signature() != action.Euclidean {
 			return nil, &Refusal{Problem: problemMinimum, Why: "the density is Lorentzian, whose stationary histories are saddles; want the Euclidean signature, or ask for the least residual"}
 		}
 	}
-	p, err := newProblem(problemMinimum, s, held, start, set)
+	p, err := newProblem(problemMinimum, f, held, start, set)
 	if err != nil {
 		return nil, err
 	}
@@ -57,12 +59,12 @@ func Minimum(ctx context.Context, s *action.Discrete, held *constraint.Set, star
 	for k := range p.free.N {
 		m.leads = append(m.leads, int32(p.free.Lead(k)))
 	}
-	m.second = s.SecondVariationMatrix(nil, m.h)
-	m.slope = s.Gradient(nil, m.h)
+	m.second = f.SecondVariationMatrix(nil, m.h)
+	m.slope = f.Gradient(nil, m.h)
 	m.trialSlope = m.slope.Clone()
 	m.grad, m.trialGrad = make([]float64, p.free.N), make([]float64, p.free.N)
 	m.free.Reduce(m.grad, m.slope)
-	m.value = s.Value(m.h)
+	m.value = f.Value(m.h)
 	m.measure()
 	m.rep.Before, m.rep.CostBefore = m.rep.After, m.value
 	if n := m.rep.Before; math.IsNaN(n.Max-n.Max) || math.IsNaN(m.value-m.value) {
@@ -108,8 +110,8 @@ func (m *minimum) analyse() (err error) {
 // |∂S/∂φ|/hk there.
 func (m *minimum) evaluate(delta []float64) (value, largest float64) {
 	m.move(delta)
-	value = m.s.Value(m.trial)
-	m.trialSlope = m.s.Gradient(m.trialSlope, m.trial)
+	value = m.f.Value(m.trial)
+	m.trialSlope = m.f.Gradient(m.trialSlope, m.trial)
 	m.free.Reduce(m.trialGrad, m.trialSlope)
 	for _, g := range m.trialGrad {
 		largest = max(largest, math.Abs(g)/m.hk)
@@ -127,7 +129,7 @@ func (m *minimum) accept(value float64) {
 
 // measure evaluates the second variation at h and updates the report.
 func (m *minimum) measure() {
-	m.second = m.s.SecondVariationMatrix(m.second, m.h)
+	m.second = m.f.SecondVariationMatrix(m.second, m.h)
 	// the gradient by the unknowns, per hk, at the values that lead them
 	reduced := m.trialSlope
 	clear(reduced.Data)

@@ -16,7 +16,7 @@ import (
 // A problem is what every solve starts from: the action, what is free, and the
 // best history so far.
 type problem struct {
-	s     *action.Discrete
+	f     Functional
 	free  *constraint.Unknowns
 	set   Settings
 	hk    float64
@@ -28,17 +28,17 @@ type problem struct {
 
 // newProblem checks what a caller hands to a solver called name and adjusts the
 // start history to the conditions.
-func newProblem(name string, s *action.Discrete, held *constraint.Set, start *field.History, set *Settings) (*problem, error) {
-	if s == nil {
+func newProblem(name string, f Functional, held *constraint.Set, start *field.History, set *Settings) (*problem, error) {
+	if f == nil {
 		return nil, fmt.Errorf("minimize: %s of no action; want one from action.New", name)
 	}
 	if start == nil {
 		return nil, fmt.Errorf("minimize: %s without a start history; want one such as field.Repeat of the first slice", name)
 	}
-	if err := s.Fits(start); err != nil {
+	if err := f.Fits(start); err != nil {
 		return nil, fmt.Errorf("minimize: start history: %w", err)
 	}
-	b := s.Block()
+	b := f.Block()
 	if held == nil {
 		held = constraint.On(b)
 	}
@@ -62,7 +62,7 @@ func newProblem(name string, s *action.Discrete, held *constraint.Set, start *fi
 		return nil, fmt.Errorf("minimize: %s with all %d values held and none free; remove a condition", name, free.Values())
 	}
 	free.Scatter(h, free.Gather(nil, h))
-	p := &problem{s: s, free: free, set: c, hk: b.Time.Step * b.Space.Step, h: h, trial: h.Clone(), began: time.Now()}
+	p := &problem{f: f, free: free, set: c, hk: b.Time.Step * b.Space.Step, h: h, trial: h.Clone(), began: time.Now()}
 	p.rep = Report{Problem: name, Unknowns: free.N, Fixed: free.Fixed(), Redundant: free.Redundant}
 	return p, nil
 }
@@ -85,7 +85,7 @@ func describe(b lattice.Block) string {
 
 // grid puts the unknowns on the grid of slices and sites.
 func (p *problem) grid() *nested.Pattern {
-	b := p.s.Block()
+	b := p.f.Block()
 	g := &nested.Pattern{
 		N: p.free.N, Row: make([]int32, p.free.N), Col: make([]int32, p.free.N),
 		Rows: b.Slices(), Cols: b.Sites(), WrapRow: b.Time.Periodic, WrapCol: b.Space.Periodic,
@@ -166,7 +166,7 @@ func (p *problem) norm(values []float64, rows []int32) Norm {
 // besides them, force and source. Rows whose links go around a periodic axis are
 // left out, unless there are no others.
 func (p *problem) scale(m *action.Matrix, r []float64, rows []int32) float64 {
-	b := p.s.Block()
+	b := p.f.Block()
 	size := p.h.Components * b.Sites()
 	var inside, around float64 // rows whose links stay inside, and the others
 	for _, e := range rows {

@@ -39,7 +39,10 @@ func TestWrongInput(t *testing.T) {
 	})
 	elsewhere := b
 	elsewhere.Time.From = 1
-	least, lowest := LeastResidual, Minimum
+	least := LeastResidual
+	lowest := func(ctx context.Context, s *action.Discrete, held *constraint.Set, start *field.History, set *Settings) (*Found, error) {
+		return Minimum(ctx, s, held, start, set)
+	}
 	for _, tc := range []struct {
 		name  string
 		solve func(context.Context, *action.Discrete, *constraint.Set, *field.History, *Settings) (*Found, error)
