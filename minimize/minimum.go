@@ -37,17 +37,12 @@ import (
 // kink, is wanted. The push of a reaction is −∂S/∂φ(E), the impulse that a source
 // at E would need to hold the field there.
 func Minimum(ctx context.Context, f Functional, held *constraint.Set, start *field.History, set *Settings) (*Found, error) {
-	if f = given(f); f != nil {
-		if err := f.Conservative(); err != nil {
-			why := err.Error()
-			if part := (*action.NoActionError)(nil); errors.As(err, &part) {
-				why = part.Part + " does not come from an action; ask for the least residual"
-			}
-			return nil, &Refusal{Problem: problemMinimum, Why: why, Cause: err}
-		}
-		if g, ok := f.(signed); ok && g.Signature() != action.Euclidean {
-			return nil, &Refusal{Problem: problemMinimum, Why: "the density is Lorentzian, whose stationary histories are saddles; want the Euclidean signature, or ask for the least residual"}
-		}
+	f = given(f)
+	if err := refuseLosses(problemMinimum, f); err != nil {
+		return nil, err
+	}
+	if err := refuseLorentzian(problemMinimum, f); err != nil {
+		return nil, err
 	}
 	p, err := newProblem(problemMinimum, f, held, start, set)
 	if err != nil {
