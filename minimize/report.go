@@ -111,7 +111,7 @@ func (s Step) String() string {
 // String returns the report as a few lines for a terminal.
 func (r Report) String() string {
 	what, cost := "residual", "cost"
-	if r.Problem == problemMinimum {
+	if !strings.HasSuffix(r.Problem, "residual") {
 		what, cost = "gradient", "action"
 	}
 	var b strings.Builder
