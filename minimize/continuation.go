@@ -16,7 +16,8 @@ import (
 // A Family is one problem for each value p of a parameter: the functional and the
 // conditions on it. Either may depend on p, the steps of the block as well, but
 // not the number of its events or which of them are free. nil conditions hold
-// nothing. It is asked for values a little beside those of the branch, too.
+// nothing. It is asked for values a little beside those of the branch, too, and up
+// to a step beyond its end.
 type Family func(p float64) (Functional, *constraint.Set, error)
 
 // ContinuationSettings of Continue. The zero value works; so does a nil pointer.

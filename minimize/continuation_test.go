@@ -199,6 +199,48 @@ func TestBranchPointsOfTheTrivialBranch(t *testing.T) {
 	}
 }
 
+// The Klein–Gordon field, zero at its first and last slice and at both ends, has
+// other histories at the masses for which a standing wave of leapfrog fits both:
+// m² = (4/k²)sin²(jπ/2Nt) − (4/h²)sin²(lπ/2Nx). Each is a branch point of the zero
+// history, and its index, Lorentzian, changes by one there.
+func TestBranchPointsOfALorentzianBlock(t *testing.T) {
+	const nt, nx, k, h, low, high = 6, 5, 0.4, 0.5, 1, 9
+	b := lattice.Block{
+		Time:  lattice.Axis{Step: k, Sites: nt + 1},
+		Space: lattice.Axis{Step: h, Sites: nx + 1, Left: lattice.Held, Right: lattice.Held},
+	}
+	family := func(squared float64) (Functional, *constraint.Set, error) {
+		s, err := action.New(b, action.Wave{Potential: action.Mass(1), Sigma: action.Uniform(squared)})
+		return s, frame(b), err
+	}
+	var want []float64
+	for j := 1; j < nt; j++ {
+		for l := 1; l < nx; l++ {
+			m := math.Pow(2/k*math.Sin(math.Pi*float64(j)/2/nt), 2) - math.Pow(2/h*math.Sin(math.Pi*float64(l)/2/nx), 2)
+			if m > low && m < high {
+				want = append(want, m)
+			}
+		}
+	}
+	slices.Sort(want)
+	branch := follow(t, family, low, field.NewHistory(b, 1), &ContinuationSettings{Step: 0.05, Longest: 0.05, Low: low, High: high, Points: 1000})
+	points := branch.Of(Branching)
+	if len(points) != len(want) || len(want) < 5 {
+		t.Fatalf("%d branch points, want %d: %v", len(points), len(want), want)
+	}
+	for i, p := range points {
+		// located to 1e-9 of the eigenvalues at the ends of the step
+		if math.Abs(p.Parameter-want[i]) > 1e-8 {
+			t.Errorf("branch point at m² = %.12g, want %.12g", p.Parameter, want[i])
+		}
+	}
+	first, last := branch.Points[0], branch.Points[len(branch.Points)-1]
+	// −m²φ²: every branch point makes one more direction negative
+	if last.Index-first.Index != len(want) {
+		t.Errorf("index %d at m² = %g and %d at %g; want %d more", first.Index, first.Parameter, last.Index, last.Parameter, len(want))
+	}
+}
+
 // A derivative by the parameter that the caller supplies gives the same branch.
 func TestSuppliedDerivative(t *testing.T) {
 	f, start := bratuLine(16)

@@ -71,29 +71,39 @@ type least struct {
 
 func newLeast(p *problem, s *action.Discrete) (*least, error) {
 	l := &least{problem: p, s: s}
-	rows, err := l.rows()
-	if err != nil {
+	if err := l.begin(); err != nil {
 		return nil, err
 	}
-	l.res = s.Residual(nil, p.h)
-	if n := p.norm(l.res.Data, rows); math.IsNaN(n.Max-n.Max) || math.IsInf(l.squares(l.res.Data, rows), 0) {
-		return nil, fmt.Errorf("minimize: residual of the start history is %v at %v; want a start for which the equation can be evaluated", n.Max, n.At)
-	}
-	l.trialRes = l.res.Clone()
-	l.jac = s.ResidualJacobian(nil, p.h)
-	l.normal = newNormal(l.jac, rows, p.free, p.grid())
+	var err error
 	if l.solver, err = p.factoriser(l.normal.pattern, "want a smaller block or higher limits in the settings"); err != nil {
 		return nil, err
 	}
-	for _, v := range []*[]float64{&l.grad, &l.size, &l.delta, &l.curved} {
+	for _, v := range []*[]float64{&l.delta, &l.curved} {
 		*v = make([]float64, p.free.N)
 	}
 	l.damped = make([]float64, len(l.normal.values))
-	l.sum = l.squares(l.res.Data, rows)
-	p.rep.Rows = len(rows)
 	p.rep.Method = fmt.Sprintf("Levenberg–Marquardt, nested-dissection Cholesky, q = %g", p.set.ResidualScale)
-	p.rep.Push = "∂cost/∂φ at the event, the multiplier of the pin"
 	return l, nil
+}
+
+// begin evaluates the residual of the start.
+func (l *least) begin() error {
+	rows, err := l.rows()
+	if err != nil {
+		return err
+	}
+	l.res = l.s.Residual(nil, l.h)
+	if n := l.norm(l.res.Data, rows); math.IsNaN(n.Max-n.Max) || math.IsInf(l.squares(l.res.Data, rows), 0) {
+		return fmt.Errorf("minimize: residual of the start history is %v at %v; want a start for which the equation can be evaluated", n.Max, n.At)
+	}
+	l.trialRes = l.res.Clone()
+	l.jac = l.s.ResidualJacobian(nil, l.h)
+	l.normal = newNormal(l.jac, rows, l.free, l.grid())
+	l.grad, l.size = make([]float64, l.free.N), make([]float64, l.free.N)
+	l.sum = l.squares(l.res.Data, rows)
+	l.rep.Rows = len(rows)
+	l.rep.Push = "∂cost/∂φ at the event, the multiplier of the pin"
+	return nil
 }
 
 // rows returns the events with a field equation that is not lifted.
@@ -148,8 +158,13 @@ func (l *least) cost(sum float64) float64 {
 
 // linearise evaluates Jacobian, normal matrix and gradient at h.
 func (l *least) linearise() {
-	l.jac = l.s.ResidualJacobian(l.jac, l.h)
+	l.differentiate()
 	l.normal.assemble(l.jac)
+}
+
+// differentiate evaluates Jacobian and gradient at h.
+func (l *least) differentiate() {
+	l.jac = l.s.ResidualJacobian(l.jac, l.h)
 	l.normal.gradient(l.grad, l.size, l.jac, l.res.Data)
 }
 

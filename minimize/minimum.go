@@ -51,19 +51,8 @@ func Minimum(ctx context.Context, f Functional, held *constraint.Set, start *fie
 	m := &minimum{problem: p}
 	m.rep.Push = "−∂S/∂φ at the event, the impulse that holds the pin"
 	m.rep.Rows = p.free.N
-	for k := range p.free.N {
-		m.leads = append(m.leads, int32(p.free.Lead(k)))
-	}
-	m.second = f.SecondVariationMatrix(nil, m.h)
-	m.slope = f.Gradient(nil, m.h)
-	m.trialSlope = m.slope.Clone()
-	m.grad, m.trialGrad = make([]float64, p.free.N), make([]float64, p.free.N)
-	m.free.Reduce(m.grad, m.slope)
-	m.value = f.Value(m.h)
-	m.measure()
-	m.rep.Before, m.rep.CostBefore = m.rep.After, m.value
-	if n := m.rep.Before; math.IsNaN(n.Max-n.Max) || math.IsNaN(m.value-m.value) {
-		return nil, fmt.Errorf("minimize: action of the start history is %v, its gradient %v at %v; want a start for which both can be evaluated", m.value, n.Max, n.At)
+	if err := m.begin(); err != nil {
+		return nil, err
 	}
 	if p.set.Method != LBFGS {
 		err := m.analyse()
@@ -92,6 +81,25 @@ type minimum struct {
 	grad, trialGrad   []float64      // the same by the unknowns
 	value             float64        // S of h
 	damped, delta     []float64
+}
+
+// begin evaluates the start.
+func (m *minimum) begin() error {
+	for k := range m.free.N {
+		m.leads = append(m.leads, int32(m.free.Lead(k)))
+	}
+	m.second = m.f.SecondVariationMatrix(nil, m.h)
+	m.slope = m.f.Gradient(nil, m.h)
+	m.trialSlope = m.slope.Clone()
+	m.grad, m.trialGrad = make([]float64, m.free.N), make([]float64, m.free.N)
+	m.free.Reduce(m.grad, m.slope)
+	m.value = m.f.Value(m.h)
+	m.measure()
+	m.rep.Before, m.rep.CostBefore = m.rep.After, m.value
+	if n := m.rep.Before; math.IsNaN(n.Max-n.Max) || math.IsNaN(m.value-m.value) {
+		return fmt.Errorf("minimize: action of the start history is %v, its gradient %v at %v; want a start for which both can be evaluated", m.value, n.Max, n.At)
+	}
+	return nil
 }
 
 // analyse prepares the factorisation, or returns a *TooLarge.

@@ -1,0 +1,139 @@
+package minimize
+
+import (
+	"fmt"
+	"math"
+
+	"github.com/tenter-go/tenter/action"
+)
+
+// A descent is what a flow runs down: a cost of the unknowns with its gradient and
+// a matrix of second derivatives. unit is what gradient and matrix are divided by
+// in the flow.
+type descent interface {
+	base() *problem
+	cost() float64
+
+	// gradient returns ∂cost/∂x in units of unit, and second the matrix in the
+	// same unit, both at the best history.
+	gradient() []float64
+	second() (matrix symmetric, diagonal []int)
+	unit() float64
+
+	// move makes h + δ the best history and reports whether it can be evaluated;
+	// if it cannot, h stays.
+	move(delta []float64) bool
+
+	// solved reports whether the history is a solution. thorough measures the
+	// scale of the equation anew.
+	solved(thorough bool) (done bool, reason string)
+	finish(status Status, reason string, cause error) (*Found, error)
+}
+
+// actionDescent runs down an action.
+type actionDescent struct{ *minimum }
+
+func newActionDescent(p *problem) (*actionDescent, error) {
+	d := &actionDescent{&minimum{problem: p}}
+	p.rep.Push = "−∂S/∂φ at the event, the impulse that holds the pin"
+	p.rep.Rows = p.free.N
+	if err := d.begin(); err != nil {
+		return nil, err
+	}
+	d.minimum.hess = newHessian(d.minimum.second, p.free, p.grid())
+	return d, nil
+}
+
+func (d *actionDescent) base() *problem      { return d.problem }
+func (d *actionDescent) cost() float64       { return d.value }
+func (d *actionDescent) gradient() []float64 { return d.grad }
+func (d *actionDescent) unit() float64       { return d.hk }
+
+func (d *actionDescent) second() (symmetric, []int) {
+	d.minimum.second = d.f.SecondVariationMatrix(d.minimum.second, d.h)
+	d.hess.assemble(d.minimum.second)
+	return symmetric{d.hess.pattern, d.hess.values}, d.hess.diagonal
+}
+
+func (d *actionDescent) move(delta []float64) bool {
+	value, most := d.evaluate(delta)
+	if bad(value) || bad(most) {
+		return false
+	}
+	d.accept(value)
+	return true
+}
+
+func (d *actionDescent) solved(thorough bool) (bool, string) {
+	if thorough {
+		d.measure()
+	} else {
+		d.rep.After.Max = 0
+		for _, g := range d.grad {
+			d.rep.After.Max = max(d.rep.After.Max, math.Abs(g)/d.hk)
+		}
+	}
+	return d.rep.After.Max <= d.rep.Tolerance, "gradient within the tolerance"
+}
+
+// residualDescent runs down the squared residual.
+type residualDescent struct {
+	*least
+	diagonal []int
+}
+
+func newResidualDescent(p *problem, s *action.Discrete) (*residualDescent, error) {
+	l := &least{problem: p, s: s}
+	if err := l.begin(); err != nil {
+		return nil, err
+	}
+	l.differentiate()
+	return &residualDescent{least: l, diagonal: l.normal.diagonal}, nil
+}
+
+func (d *residualDescent) base() *problem      { return d.problem }
+func (d *residualDescent) cost() float64       { return d.least.cost(d.sum) }
+func (d *residualDescent) gradient() []float64 { return d.grad }
+func (d *residualDescent) unit() float64       { return d.set.ResidualScale * d.set.ResidualScale }
+
+func (d *residualDescent) second() (symmetric, []int) {
+	d.normal.assemble(d.jac)
+	return symmetric{d.normal.pattern, d.normal.values}, d.diagonal
+}
+
+func (d *residualDescent) move(delta []float64) bool {
+	sum := d.evaluate(delta)
+	if bad(sum) {
+		return false
+	}
+	d.accept(sum)
+	d.differentiate()
+	return true
+}
+
+func (d *residualDescent) solved(bool) (bool, string) {
+	d.measure()
+	return d.least.solved()
+}
+
+func bad(v float64) bool { return math.IsNaN(v) || math.IsInf(v, 0) }
+
+// An Unstable is the error of an explicit flow whose step is above the limit of
+// stability at the start.
+type Unstable struct {
+	Flow       string
+	Step       float64 // Δτ
+	Eigenvalue float64 // the largest of ∂G/∂φ is at least that
+	Largest    float64 // the limit
+}
+
+func (e *Unstable) Error() string {
+	return fmt.Sprintf("minimize: step %g is above the stability limit of %s: largest eigenvalue %.6g, limit %.6g; want a step below it, or implicit steps",
+		e.Step, e.Flow, e.Eigenvalue, e.Largest)
+}
+
+// factorise prepares implicit steps, or returns a *TooLarge.
+func factorise(d descent) (factoriser, error) {
+	m, _ := d.second()
+	return d.base().factoriser(m.Pattern, "want explicit steps, a smaller block or higher limits in the settings")
+}
