@@ -57,7 +57,9 @@ func waves(b lattice.Block, most int) iter.Seq[*field.History] {
 
 func stationary(s *action.Discrete) Solve {
 	return func(ctx context.Context, start *field.History) (*Found, error) {
-		return LeastResidual(ctx, s, nil, start, nil)
+		// as many steps as it takes towards φ = 0, where the default, in terms of the
+		// solution, would ask for nothing less than zero
+		return LeastResidual(ctx, s, nil, start, &Settings{Tolerance: 1e-10})
 	}
 }
 

@@ -52,7 +52,7 @@ type ContinuationSettings struct {
 	// must not depend on p then. nil means a central difference.
 	Derivative func(dst, h *field.History, p float64)
 
-	Tolerance float64 // largest |∂S/∂φ|/hk of a point. 0 means 1e-10 of the largest term of the equation.
+	Tolerance float64 // largest |∂S/∂φ|/hk of a point. 0 means 1e-10 of the largest term of the equation that was met.
 
 	Memory, Work float64 // limits of a factorisation, as in Settings
 
@@ -205,6 +205,10 @@ func Continue(ctx context.Context, family Family, p float64, start *field.Histor
 		}
 		c.rep.Step = step
 		next, err := c.advance(ctx, here, step)
+		var between []*curvePoint
+		if err == nil {
+			between, err = c.between(ctx, here, next, step)
+		}
 		if ctx.Err() != nil {
 			continue
 		}
@@ -216,10 +220,6 @@ func Continue(ctx context.Context, family Family, p float64, start *field.Histor
 			continue
 		}
 		c.rep.Steps++
-		between, err := c.between(ctx, here, next, step)
-		if err != nil {
-			return c.end(Stalled, err.Error(), err)
-		}
 		for _, q := range between {
 			if done, reason := c.record(q); done {
 				return c.end(Converged, reason, nil)

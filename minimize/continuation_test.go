@@ -367,3 +367,29 @@ func TestPointsAreInOrder(t *testing.T) {
 		t.Errorf("%v", end)
 	}
 }
+
+// Points asked for just below a fold are found on the side of it where the branch
+// is: at λ = λc − ε, u(½) lies √ε below and above that of the fold.
+func TestPointsBesideAFold(t *testing.T) {
+	f, start := bratuLine(16)
+	set := &ContinuationSettings{Step: 0.3, Low: 2, High: 9}
+	top := follow(t, f, 3, start, set).Of(Fold)[0]
+	centre := func(p Point) float64 { return p.History.At(0, 0, 8) - top.History.At(0, 0, 8) }
+	var before, after []float64
+	for _, e := range []float64{1e-4, 1e-6} {
+		set.At = []float64{top.Parameter - e}
+		asked := follow(t, f, 3, start, set).Of(Asked)
+		if len(asked) != 3 || asked[0].Index != 0 || asked[1].Index != 1 || !(asked[0].Slope > 0 && asked[1].Slope < 0) {
+			t.Fatalf("%g below the fold: %v", e, asked)
+		}
+		before, after = append(before, centre(asked[0])), append(after, centre(asked[1]))
+	}
+	for name, d := range map[string][]float64{"before": before, "after": after} {
+		if r := d[0] / d[1]; math.Abs(r-10) > 0.1 { // √100, with the next order ε at 1e-4
+			t.Errorf("%s the fold: distances %.4g, ratio %.4f; want 10", name, d, r)
+		}
+	}
+	if r := before[1] / after[1]; math.Abs(r+1) > 0.01 { // √ε to both sides, beside ε
+		t.Errorf("distances %.4g and %.4g", before[1], after[1])
+	}
+}

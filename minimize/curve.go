@@ -26,6 +26,7 @@ type continuation struct {
 	plain  *bordered // without, made when it is needed
 	grid   *nested.Pattern
 
+	floor  float64 // the largest tolerance so far: on a branch of zeros all terms vanish
 	branch *Branch
 	rep    BranchReport
 	last   float64
@@ -158,7 +159,8 @@ func (c *continuation) look(x []float64, p float64) (*curvePoint, error) {
 	c.hess.assemble(q.second)
 	pt := &curvePoint{x: x}
 	pt.Parameter, pt.Gradient = p, q.size(g)
-	pt.tolerance = q.tolerance()
+	c.floor = max(c.floor, q.tolerance())
+	pt.tolerance = c.floor
 	if math.IsNaN(pt.Gradient.Max) || math.IsInf(pt.Gradient.Max, 0) {
 		return nil, fmt.Errorf("gradient is %v at %v and parameter %g", pt.Gradient.Max, pt.Gradient.At, p)
 	}
@@ -197,7 +199,7 @@ func (c *continuation) correct(ctx context.Context, x []float64, p float64, from
 			return pt, c.complete(pt, from, row, corner)
 		}
 		if step == mostNewton || !solved && step > 3 && !(pt.Gradient.Max < previous) {
-			return nil, fmt.Errorf("Newton's method leaves a gradient of %.3g at %v after %d steps", pt.Gradient.Max, pt.Gradient.At, step)
+			return nil, fmt.Errorf("gradient of %.3g at %v is left after %d Newton steps", pt.Gradient.Max, pt.Gradient.At, step)
 		}
 		polished = solved // one more step makes the point exact to rounding
 		previous = pt.Gradient.Max
@@ -221,7 +223,7 @@ func (c *continuation) correct(ctx context.Context, x []float64, p float64, from
 		p += dp[0]
 		c.rep.Newton++
 		if math.IsNaN(p) {
-			return nil, errors.New("Newton's method diverges")
+			return nil, errors.New("parameter of a Newton step is not a number")
 		}
 	}
 }

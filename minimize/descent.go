@@ -66,7 +66,7 @@ func (d *actionDescent) move(delta []float64) bool {
 
 func (d *actionDescent) solved(thorough bool) (bool, string) {
 	if thorough {
-		d.measure()
+		keepTolerance(&d.rep, d.measure)
 	} else {
 		d.rep.After.Max = 0
 		for _, g := range d.grad {
@@ -112,8 +112,16 @@ func (d *residualDescent) move(delta []float64) bool {
 }
 
 func (d *residualDescent) solved(bool) (bool, string) {
-	d.measure()
+	keepTolerance(&d.rep, d.measure)
 	return d.least.solved()
+}
+
+// keepTolerance measures, but does not let the tolerance of the report fall: in a
+// flow towards φ = 0 the terms of the equation vanish together with the gradient.
+func keepTolerance(r *Report, measure func()) {
+	before := r.Tolerance
+	measure()
+	r.Tolerance = max(before, r.Tolerance)
 }
 
 func bad(v float64) bool { return math.IsNaN(v) || math.IsInf(v, 0) }

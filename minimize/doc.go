@@ -24,6 +24,36 @@
 // ∂S/∂φ = 0 of the free events lack that of slice 1 and have a natural condition
 // at the last slice instead.
 //
+// # Ways downhill
+//
+// [Relax] and [RelaxResidual] let a history flow in a relaxation time τ beside the
+// times of the block, down a Euclidean action or the squared residual, with or
+// without inertia and friction. Explicit steps carry a disturbance by one link or
+// two and are refused above their limit of stability; implicit ones use the exact
+// factor. What counts is the way: the solvers above reach the end sooner.
+//
+// # Families
+//
+// [Continue] follows a stationary history of either signature as a parameter
+// changes, with pseudo-arclength steps around folds, and locates folds and branch
+// points, where the index tells of them. At a fold of a family of minima, the
+// index goes from 0 to 1: the upper branch is the saddle over which the lower one
+// decays.
+//
+// [Periodic] finds histories that are periodic in time, breathers and oscillons,
+// of which there is a family: one of period, frequency, energy and amplitude is
+// given, and the step of the clock is an unknown. For given slices the action of
+// one period T is S = K/T − UT, so that the energy is −dS/dT and the condition on it
+// is one more stationary equation.
+//
+// [TakeCensus] solves from many starts and lists the distinct histories, up to
+// symmetries if one likes, with action and index.
+//
+// Both families meet singular second variations by design: at a fold, and because
+// a shift in time costs nothing. Their matrix is bordered by what fixes that, the
+// tangent of the branch or the rate of the history, and it is the bordered matrix
+// that is factorised.
+//
 // # Conditions
 //
 // Conditions come from package constraint and hold exactly. Ends of kind Held and
@@ -35,11 +65,13 @@
 //
 // # Outcome
 //
-// Both return a [Found] with the history, the reactions and a [Report]. Unless
-// the status is Converged the error is a [*NotConverged], and the history is the
-// best one so far; a context that ends is one of the reasons. Problems that
-// cannot be asked are a [*Refusal], those above the limits of the settings a
-// [*TooLarge]. There is no silent fall-back: the report names the method.
+// Minimum and LeastResidual return a [Found] with the history, the reactions and a
+// [Report], and so do the others in an outcome of their own. Unless the status is
+// Converged the error is a [*NotConverged], for a branch a [*BrokenBranch], and the
+// history is the best one so far; a context that ends is one of the reasons.
+// Problems that cannot be asked are a [*Refusal], those above the limits of the
+// settings a [*TooLarge], explicit steps above theirs an [*Unstable]. There is no
+// silent fall-back: the report names the method.
 //
 // # Size and time
 //

@@ -219,7 +219,9 @@ func (f *flow) end(status Status, reason string, cause error) (*Relaxed, error) 
 	if p.rep.Iterations%f.set.Every != 0 {
 		f.frame()
 	}
+	tolerance := p.rep.Tolerance
 	found, err := f.finish(status, reason, cause)
+	found.Report.Tolerance = tolerance
 	out := f.out
 	out.Found, out.Tau, out.Frames = found, f.tau, slices.Clip(f.out.Frames)
 	if status == Stopped && cause == nil && f.set.Until > 0 && f.tau >= f.set.Until {

@@ -70,6 +70,11 @@ func TestSineGordonBreather(t *testing.T) {
 			}
 			o = swing(t, b, wave, start, Energy(energy), nil)
 			note("frequency at the energy", o.Frequency-tc.omega)
+			// The orbit solves the equation of its own block.
+			again := newAction(t, o.History.Block.Time, o.History.Block.Space, wave)
+			if r := again.Residual(nil, o.History).MaxAbs(); r > o.Report.Tolerance || math.Abs(o.History.Block.Time.Length()-o.Period) > 1e-14*o.Period {
+				t.Errorf("residual %.3g on its block, period %.15g", r, o.Period)
+			}
 			if math.Abs(o.Energy-energy) > 1e-10 { // 1e-10 of the scale of the equation
 				t.Errorf("energy %.15g, given %.15g", o.Energy, energy)
 			}

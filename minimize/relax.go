@@ -32,7 +32,7 @@ type RelaxSettings struct {
 
 	// Tolerance ends the flow: the largest |G|, with friction of |γφ_τ| as well,
 	// for an action; the largest |residual| for the squared residual. 0 means
-	// 1e-10 of the largest term of the equation. Flatness, ResidualScale and
+	// 1e-10 of the largest term of the equation that the flow has met. Flatness, ResidualScale and
 	// Lifted are those of Settings, for the squared residual.
 	Tolerance, Flatness, ResidualScale float64
 	Lifted                             []lattice.Event
@@ -92,7 +92,7 @@ const (
 // eigenvalue of ∂G/∂φ. A step above the limit by an estimate that Λ is not below, at
 // the start, is refused with an *Unstable; the default step is safe by a bound
 // that Λ is not above. Each explicit step moves the front of a disturbance by one
-// link. Implicit steps are linearly implicit Euler steps,
+// link, of the longest that there are. Implicit steps are linearly implicit Euler steps,
 //
 //	(∂G/∂φ + 1/Δτ)δ = −G  or  (∂G/∂φ + γ/Δτ + 1/Δτ²)δ = −G + φ_τ/Δτ,
 //

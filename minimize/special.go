@@ -60,6 +60,9 @@ func (c *continuation) between(ctx context.Context, a, b *curvePoint, step float
 			if err != nil {
 				return nil, fmt.Errorf("parameter %g could not be met: %w", v, err)
 			}
+			if q.slope*(hi.Parameter-lo.Parameter) < 0 {
+				return nil, fmt.Errorf("parameter %g was met on the other side of a fold", v)
+			}
 			q.Kind, q.Arc = Asked, lo.Arc+f*(hi.Arc-lo.Arc)
 			list = append(list, q)
 		}
