@@ -296,7 +296,7 @@ func index(f Functional, held *constraint.Set, h *field.History) (n int, known b
 	m := f.SecondVariationMatrix(nil, q.h)
 	hess := newHessian(m, q.free, q.grid())
 	hess.assemble(m)
-	b, err := newBordered(hess.pattern, 0)
+	b, err := newEdged(hess.pattern, 0)
 	if err != nil {
 		return 0, false, err
 	}

@@ -55,7 +55,7 @@ func waves(b lattice.Block, most int) iter.Seq[*field.History] {
 	}
 }
 
-func stationary(s *action.Discrete) Solve {
+func byResidual(s *action.Discrete) Solve {
 	return func(ctx context.Context, start *field.History) (*Found, error) {
 		// as many steps as it takes towards φ = 0, where the default, in terms of the
 		// solution, would ask for nothing less than zero
@@ -77,7 +77,7 @@ func TestCensusOfAllenCahn(t *testing.T) {
 	for _, h := range []float64{0.4, 0.2, 0.1} {
 		s := allenCahn(t, long, h)
 		set := &CensusSettings{Of: s, Most: 1e-8, Distance: 1e-3} // states are of order 1 apart
-		c, err := TakeCensus(context.Background(), stationary(s), waves(s.Block(), 2), set)
+		c, err := TakeCensus(context.Background(), byResidual(s), waves(s.Block(), 2), set)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -127,7 +127,7 @@ func TestCensusOfAllenCahn(t *testing.T) {
 			}
 			return g
 		}}
-		c, err = TakeCensus(context.Background(), stationary(s), waves(s.Block(), 2), set)
+		c, err = TakeCensus(context.Background(), byResidual(s), waves(s.Block(), 2), set)
 		if err != nil || len(c.Residents) != 4 {
 			t.Errorf("h = %g, up to a sign: %v, %v", h, c, err)
 		}
@@ -147,7 +147,7 @@ func TestCensusDoesNotDependOnWorkers(t *testing.T) {
 	s := allenCahn(t, 8, 0.4)
 	var first *Census
 	for _, workers := range []int{1, 2, 7} {
-		c, err := TakeCensus(context.Background(), stationary(s), waves(s.Block(), 2), &CensusSettings{Of: s, Workers: workers, Distance: 1e-3})
+		c, err := TakeCensus(context.Background(), byResidual(s), waves(s.Block(), 2), &CensusSettings{Of: s, Workers: workers, Distance: 1e-3})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -205,7 +205,7 @@ func TestCensusStops(t *testing.T) {
 	}
 
 	// No residual but zero itself is that small.
-	c, err = TakeCensus(context.Background(), stationary(s), waves(s.Block(), 2), &CensusSettings{Most: 1e-300})
+	c, err = TakeCensus(context.Background(), byResidual(s), waves(s.Block(), 2), &CensusSettings{Most: 1e-300})
 	var high *HighResidual
 	if err != nil || len(c.Failed) == 0 || !errors.As(c.Failed[0].Err, &high) || high.Most != 1e-300 {
 		t.Errorf("%v: %v", err, c)
@@ -223,9 +223,9 @@ func TestWrongCensus(t *testing.T) {
 		says   string
 	}{
 		{"no solve", nil, starts, nil, "without a solve"},
-		{"no starts", stationary(s), nil, nil, "without starts"},
-		{"negative distance", stationary(s), starts, &CensusSettings{Distance: -1}, "distance -1"},
-		{"negative workers", stationary(s), starts, &CensusSettings{Workers: -1}, "-1 workers"},
+		{"no starts", byResidual(s), nil, nil, "without starts"},
+		{"negative distance", byResidual(s), starts, &CensusSettings{Distance: -1}, "distance -1"},
+		{"negative workers", byResidual(s), starts, &CensusSettings{Workers: -1}, "-1 workers"},
 	} {
 		if c, err := TakeCensus(context.Background(), tc.solve, tc.starts, tc.set); err == nil || c != nil || !strings.Contains(err.Error(), tc.says) {
 			t.Errorf("%s: %v, %v", tc.name, c, err)

@@ -22,8 +22,8 @@ type continuation struct {
 	at     float64        // its parameter
 
 	hess   *hessian
-	border *bordered // with one border
-	plain  *bordered // without, made when it is needed
+	border *edged // with one border
+	plain  *edged // without, made when it is needed
 	grid   *nested.Pattern
 
 	floor  float64 // the largest tolerance so far: on a branch of zeros all terms vanish
@@ -68,7 +68,7 @@ func newContinuation(family Family, p float64, start *field.History, set *Contin
 	if _, err := c.first.factoriser(c.grid, "want a smaller block or higher limits in the settings"); err != nil {
 		return nil, err
 	}
-	c.border, err = newBordered(c.grid, 1)
+	c.border, err = newEdged(c.grid, 1)
 	c.rep.Unknowns = c.first.free.N
 	return c, err
 }

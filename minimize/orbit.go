@@ -20,7 +20,7 @@ type orbit struct {
 	tried    float64
 	unknown  bool        // the period is
 	hess     *hessian    // by the unknowns
-	border   *bordered   // phase, position, period
+	border   *edged      // phase, position, period
 	held     [][]float64 // phase and position: the derivatives of the start
 	push     []float64   // their multipliers
 	from     []float64   // unknowns of the start
@@ -139,7 +139,7 @@ func (o *orbit) analyse() error {
 		m++
 	}
 	var err error
-	if o.border, err = newBordered(o.hess.pattern, m); err != nil {
+	if o.border, err = newEdged(o.hess.pattern, m); err != nil {
 		return err
 	}
 	o.x = o.free.Gather(nil, o.h)

@@ -196,7 +196,7 @@ func (c *continuation) smallest(q *curvePoint) (sigma float64, vector []float64,
 		return 0, nil, err
 	}
 	if c.plain == nil {
-		if c.plain, err = newBordered(c.grid, 0); err != nil {
+		if c.plain, err = newEdged(c.grid, 0); err != nil {
 			return 0, nil, err
 		}
 	}

@@ -33,7 +33,7 @@ func gridMatrix(rows, cols int, diagonal func(u int) float64) (*nested.Pattern, 
 // The bordered solve against gonum's dense LU, eigenvalues and determinant: for
 // definite, indefinite and singular A, and where the Schur complement of the
 // border that is factorised vanishes although K is regular.
-func TestBorderedAgainstDense(t *testing.T) {
+func TestEdgedAgainstDense(t *testing.T) {
 	const rows, cols = 4, 5
 	const n = rows * cols
 	random := rand.New(rand.NewPCG(3, 4))
@@ -87,7 +87,7 @@ func TestBorderedAgainstDense(t *testing.T) {
 					k.Set(n+i, n+j, corner[i][j])
 				}
 			}
-			b, err := newBordered(pattern, m)
+			b, err := newEdged(pattern, m)
 			if err != nil {
 				t.Fatal(err)
 			}
@@ -124,12 +124,12 @@ func TestBorderedAgainstDense(t *testing.T) {
 	}
 }
 
-func TestBorderedSpecialCases(t *testing.T) {
+func TestEdgedSpecialCases(t *testing.T) {
 	// A = diag(1, −1, 2, 2), c = (1, 1, 0, 0): cᵀA⁻¹c = 0, so that [A c; cᵀ 0] is singular,
 	// and [A c; cᵀ 1] has the determinant −4.
 	pattern := &nested.Pattern{N: 4, Rows: 1, Cols: 4, Row: make([]int32, 4), Col: []int32{0, 1, 2, 3}, Ptr: []int{0, 1, 2, 3, 4}, Adj: []int32{0, 1, 2, 3}}
 	values := []float64{1, -1, 2, 2}
-	b, err := newBordered(pattern, 1)
+	b, err := newEdged(pattern, 1)
 	if err != nil {
 		t.Fatal(err)
 	}

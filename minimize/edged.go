@@ -9,7 +9,7 @@ import (
 	"gonum.org/v1/gonum/mat"
 )
 
-// bordered solves systems with the matrix
+// edged solves systems with the matrix
 //
 //	K = [ A   B ]
 //	    [ Cᵀ  D ]
@@ -27,7 +27,7 @@ import (
 // A follows from that of M and that of a matrix of order m. [Hager 1989, SIAM Rev.
 // 31, 221; Govaerts 2000, Numerical Methods for Bifurcations of Dynamical
 // Equilibria, chapter 3]
-type bordered struct {
+type edged struct {
 	n, m     int
 	symbolic *nested.Symbolic
 	factor   *nested.Factor
@@ -41,8 +41,8 @@ type bordered struct {
 	buffer      []float64
 }
 
-// newBordered analyses A with m borders. The pattern of A is not changed.
-func newBordered(a *nested.Pattern, m int) (*bordered, error) {
+// newEdged analyses A with m borders. The pattern of A is not changed.
+func newEdged(a *nested.Pattern, m int) (*edged, error) {
 	p := *a
 	p.N += m
 	p.Row = append(p.Row[:a.N:a.N], make([]int32, m)...)
@@ -60,7 +60,7 @@ func newBordered(a *nested.Pattern, m int) (*bordered, error) {
 	if err != nil {
 		return nil, fmt.Errorf("minimize: %w", err)
 	}
-	b := &bordered{n: a.N, m: m, symbolic: symbolic, values: make([]float64, len(p.Adj))}
+	b := &edged{n: a.N, m: m, symbolic: symbolic, values: make([]float64, len(p.Adj))}
 	b.row, b.column = make([]float64, m), make([]float64, m)
 	b.buffer = make([]float64, p.N)
 	for range m {
@@ -85,7 +85,7 @@ func (e *singularMatrix) Error() string {
 // Factor prepares solves with K. a holds the values of A; columns B, rows Cᵀ and
 // corner D, D[i][j] in row i, are not changed. The error is a *singularMatrix or
 // that of values that are not finite.
-func (b *bordered) Factor(a []float64, columns, rows, corner [][]float64) error {
+func (b *edged) Factor(a []float64, columns, rows, corner [][]float64) error {
 	var size float64
 	for _, v := range a {
 		size = max(size, math.Abs(v))
@@ -166,7 +166,7 @@ func length(v []float64) float64 {
 
 // symmetric factorises M with D₀ = shift, A having so many values, and finds the
 // last columns of its inverse.
-func (b *bordered) symmetric(inner int, rows [][]float64, shift float64) (err error) {
+func (b *edged) symmetric(inner int, rows [][]float64, shift float64) (err error) {
 	at := b.values[inner:]
 	for j, c := range rows {
 		for u, v := range c {
@@ -199,19 +199,19 @@ func (b *bordered) symmetric(inner int, rows [][]float64, shift float64) (err er
 }
 
 // symmetricOnly factorises A without borders; a singular A is no error.
-func (b *bordered) symmetricOnly(a []float64) error {
+func (b *edged) symmetricOnly(a []float64) error {
 	copy(b.values, a)
 	return b.symmetric(len(a), nil, 0)
 }
 
-func (b *bordered) singular(null int) error {
+func (b *edged) singular(null int) error {
 	sigma, _, at := b.factor.Smallest(12)
 	return &singularMatrix{nullity: null, sigma: sigma, unknown: at}
 }
 
 // Solve writes the solution (x, y) for the right-hand side (f, g) to x and y,
 // which may be f and g.
-func (b *bordered) Solve(x, y, f, g []float64) {
+func (b *edged) Solve(x, y, f, g []float64) {
 	z := b.buffer
 	copy(z, f)
 	for i, v := range g {
@@ -237,7 +237,7 @@ func (b *bordered) Solve(x, y, f, g []float64) {
 
 // Negative returns the number of negative eigenvalues of A, and false if it is
 // not known because A is singular to working accuracy.
-func (b *bordered) Negative() (n int, known bool) {
+func (b *edged) Negative() (n int, known bool) {
 	_, n, _, known = b.factor.Inertia()
 	if b.m == 0 || !known {
 		return n, known
@@ -262,7 +262,7 @@ func (b *bordered) Negative() (n int, known bool) {
 }
 
 // Sign returns the sign of det K.
-func (b *bordered) Sign() int {
+func (b *edged) Sign() int {
 	_, sign := b.factor.LogDet()
 	if b.m > 0 && b.small.Det() < 0 {
 		sign = -sign
