@@ -48,6 +48,9 @@ func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 	if err != nil {
 		return nil, err
 	}
+	if t := p.free.Tally(); t != (constraint.Tally{}) {
+		return nil, &Refusal{Problem: problemResidual, Why: fmt.Sprintf("%d soft and %d linear conditions and %d bounds; the least residual takes pins and rates so far, ask for the minimum of an action", t.Terms, t.Hard+t.Soft, t.Bounded)}
+	}
 	l, err := newLeast(p, s)
 	if err != nil {
 		return nil, err
@@ -323,5 +326,5 @@ func (l *least) finish(status Status, reason string, cause error) (*Found, error
 		r[e] = l.res.Data[e] * l.hk / (l.set.ResidualScale * l.set.ResidualScale)
 	}
 	l.jac.MulTransVec(push.Data, r)
-	return l.end(status, reason, cause, push)
+	return l.end(status, reason, cause, push, constraint.Multipliers{})
 }
