@@ -45,6 +45,9 @@ func (p *problem) factoriser(pattern *nested.Pattern, suggestion string) (factor
 	var f factoriser
 	var symbolic *nested.Symbolic
 	if rows := append(slices.Clone(p.free.HardRows()), p.free.SoftRows()...); len(rows) > 0 {
+		for k := range rows {
+			rows[k].Precision /= p.unit
+		}
 		b, err := newBordered(pattern, rows)
 		if err != nil {
 			return nil, err

@@ -13,7 +13,7 @@ import (
 // LeastResidual finds a history that satisfies the conditions exactly and the
 // field equation as well as it can: it minimises the cost
 //
-//	C = Σ hk r²/2q²
+//	C = Σ hk r²/2q² + what the soft conditions cost
 //
 // over the free values, r being the residual of the field equation per hk
 // (action.Discrete.Residual) at every event of every interior slice, pinned
@@ -48,9 +48,10 @@ func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 	if err != nil {
 		return nil, err
 	}
-	if t := p.free.Tally(); t != (constraint.Tally{}) {
-		return nil, &Refusal{Problem: problemResidual, Why: fmt.Sprintf("%d soft and %d linear conditions and %d bounds; the least residual takes pins and rates so far, ask for the minimum of an action", t.Terms, t.Hard+t.Soft, t.Bounded)}
+	if p.bounds != nil {
+		return nil, &Refusal{Problem: problemResidual, Why: "bounds; they belong to the minimum of an action"}
 	}
+	p.unit = p.hk / (p.set.ResidualScale * p.set.ResidualScale)
 	l, err := newLeast(p, s)
 	if err != nil {
 		return nil, err
@@ -69,7 +70,9 @@ type least struct {
 	grad, size    []float64      // Jᵀr and Σ|Jr|
 	damped        []float64      // values of JᵀJ + λ
 	delta, curved []float64      // the step without and with its curvature
-	sum           float64        // Σ r²
+	soft          bool           // the cost has terms beside the residual
+	extra         *field.History // gradient or curvature of those
+	sum           float64        // 2C/unit: Σ r², and the soft conditions
 }
 
 func newLeast(p *problem, s *action.Discrete) (*least, error) {
@@ -91,8 +94,11 @@ func newLeast(p *problem, s *action.Discrete) (*least, error) {
 	for _, v := range []*[]float64{&l.grad, &l.size, &l.delta, &l.curved} {
 		*v = make([]float64, p.free.N)
 	}
+	if t := p.free.Tally(); t.Terms+t.Soft > 0 {
+		l.soft, l.extra = true, l.res.Clone()
+	}
 	l.damped = make([]float64, len(l.normal.values))
-	l.sum = l.squares(l.res.Data, rows)
+	l.sum = l.total(l.h, l.res)
 	p.rep.Rows = len(rows)
 	p.rep.Method = fmt.Sprintf("Levenberg–Marquardt, nested-dissection Cholesky, q = %g", p.set.ResidualScale)
 	p.rep.Push = "∂cost/∂φ at the event, the multiplier of the pin"
@@ -144,22 +150,54 @@ func (l *least) squares(r []float64, rows []int32) float64 {
 	return sum
 }
 
-// cost returns Σ hk r²/2q² for Σ r².
-func (l *least) cost(sum float64) float64 {
-	return 0.5 * l.hk * sum / (l.set.ResidualScale * l.set.ResidualScale)
+// total returns 2C/unit of the history h, whose residual is r.
+func (l *least) total(h, r *field.History) float64 {
+	sum := l.squares(r.Data, l.normal.rows)
+	if l.soft {
+		sum += 2 * l.free.Cost(h) / l.unit
+	}
+	return sum
 }
+
+// cost returns C for the total 2C/unit.
+func (l *least) cost(sum float64) float64 { return 0.5 * l.unit * sum }
 
 // linearise evaluates Jacobian, normal matrix and gradient at h.
 func (l *least) linearise() {
 	l.jac = l.s.ResidualJacobian(l.jac, l.h)
 	l.normal.assemble(l.jac)
 	l.normal.gradient(l.grad, l.size, l.jac, l.res.Data)
+	if l.soft {
+		l.soften()
+	}
 }
 
-// flat returns the largest |Jᵀr| over its size before cancellation.
+// soften adds the soft conditions to the gradient and, where their curvature is
+// positive, to the normal matrix. Soft linear conditions border the matrix.
+func (l *least) soften() {
+	clear(l.extra.Data)
+	l.free.AddGradient(l.extra, l.h)
+	for u, g := range l.free.Reduce(nil, l.extra) {
+		l.grad[u] += g / l.unit
+		l.size[u] += math.Abs(g) / l.unit
+	}
+	clear(l.extra.Data)
+	l.free.AddCurvature(l.extra, l.h)
+	for u, c := range l.free.Reduce(nil, l.extra) {
+		l.normal.values[l.normal.diagonal[u]] += max(0, c) / l.unit
+	}
+}
+
+// flat returns the largest gradient of the cost, less what hard linear
+// conditions take up, over its size before cancellation.
 func (l *least) flat() float64 {
 	var g, size float64
-	for u, v := range l.grad {
+	grad := l.grad
+	if l.hard != nil {
+		grad = make([]float64, len(l.grad))
+		l.hard.tangent(grad, l.grad, l.hard.multipliers(l.grad))
+	}
+	for u, v := range grad {
 		g, size = max(g, math.Abs(v)), max(size, l.size[u])
 	}
 	if size == 0 {
@@ -196,11 +234,11 @@ func (l *least) try(lambda float64) (sum, predicted float64) {
 	return l.evaluate(l.delta), predicted
 }
 
-// evaluate moves the trial to h + δ and returns Σ r² there.
+// evaluate moves the trial to h + δ and returns the total there.
 func (l *least) evaluate(delta []float64) float64 {
 	l.move(delta)
 	l.trialRes = l.s.Residual(l.trialRes, l.trial)
-	return l.squares(l.trialRes.Data, l.normal.rows)
+	return l.total(l.trial, l.trialRes)
 }
 
 // accept makes the trial the best history.
@@ -274,7 +312,7 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 
 // solved reports whether the history is a solution, and why.
 func (l *least) solved() (done bool, reason string) {
-	if l.rep.After.Max <= l.rep.Tolerance {
+	if l.rep.After.Max <= l.rep.Tolerance && !l.soft {
 		return true, "residual within the tolerance"
 	}
 	if l.rep.Flat <= l.set.Flatness {
@@ -287,7 +325,7 @@ func (l *least) solved() (done bool, reason string) {
 // they halve the largest residual.
 func (l *least) polish(ctx context.Context, d *damping, reason string) (*Found, error) {
 	d.lambda = d.least
-	if l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.factor(d.lambda) != nil {
+	if l.soft || l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.factor(d.lambda) != nil {
 		return l.finish(Converged, reason, nil)
 	}
 	const most = 20
@@ -323,8 +361,15 @@ func (l *least) finish(status Status, reason string, cause error) (*Found, error
 	r := l.trialRes.Data
 	clear(r)
 	for _, e := range l.normal.rows {
-		r[e] = l.res.Data[e] * l.hk / (l.set.ResidualScale * l.set.ResidualScale)
+		r[e] = l.res.Data[e] * l.unit
 	}
 	l.jac.MulTransVec(push.Data, r)
-	return l.end(status, reason, cause, push, constraint.Multipliers{})
+	if l.soft {
+		l.free.AddGradient(push, l.h)
+	}
+	var by constraint.Multipliers
+	if l.hard != nil {
+		by.Rows = l.hard.multipliers(l.free.Reduce(nil, push))
+	}
+	return l.end(status, reason, cause, push, by)
 }
