@@ -7,7 +7,9 @@
 //
 // # The density
 //
-// A [Wave] is the density of one or more components
+// There are three ways to state one: a [Wave] with a potential of the catalogue,
+// a Wave with a potential of one's own, and, for everything else, a [Lagrangian]
+// (see Cells and regions). A Wave is the density of one or more components
 //
 //	L = ½ρφ_t² − ½κφ_x² − σV(φ; x, t) + Jφ
 //
@@ -92,6 +94,40 @@
 //
 // Held and odd ends have no equation. Their values are data: a march leaves them
 // as they stand, a solver holds them, and ∂S/∂φ there is the force they carry.
+//
+// # Cells and regions
+//
+// [Cells] is the action of any density L(φ, φ_t, φ_x; x, t), cell by cell,
+//
+//	S = hk Σ_cells ¼ Σ_corners L(φ, Δ_tφ/k, Δ_xφ/h; x, t),
+//
+// the differences along the two sides that meet at the corner, and φ, x and t at
+// the corner itself. Plain averages over the cell would not see a checkerboard.
+// Positions at the corners, rather than on sides, keep a cell the same as its
+// mirror image, which makes every error even in h and k whatever L depends on;
+// for a Wave that means ρ and κ averaged over the ends of a link. L is written once
+// with hyperdual numbers ([AutoLagrangian]), which costs a few microseconds a cell,
+// or is a type with derivatives of its own.
+//
+// Cells live on a [lattice.Region], which says which cells exist: an L, a T, a disc
+// of steps. Where a neighbour is missing the natural condition holds. [Shaped] is a
+// Wave on a region at the price of a Wave: events, time links and space links count
+// with a quarter, a half and a half for each existing cell around them. Both have
+// neither losses nor a march; they are for problems that are solved all at once.
+// Events outside of the region have no gradient and empty rows in the matrix.
+//
+// # Noisy gradient flow
+//
+// [NoisyFlow] is the action of Freidlin and Wentzell of a field that runs downhill
+// in the static energy E of a Wave and is pushed by noise,
+//
+//	S = ½∫∫ (φ_t + M δE/δφ)²/M dx dt.
+//
+// Its minima are the likeliest transitions, and the least of them over all
+// durations is the quasi-potential, twice the barrier of E. The force is averaged
+// along every time link so that the square splits exactly and no lattice path is
+// cheaper than that. Second differences in space make its second variation twice
+// as wide as that of other actions.
 //
 // # Two sets of equations
 //

@@ -14,8 +14,10 @@ import (
 // the value. Nothing else of it is used.
 //
 // Errors are those of Err, a history that does not lie on the block or is not
-// finite, a condition on a component that does not exist, and a *Conflict
-// between pins and rates.
+// finite, a condition on a component that does not exist or on an event that is
+// not in the region, a strength that makes no sense; a *Conflict between pins and
+// rates, a *Crossing of bounds with them or among tied values, and a
+// *Contradiction of a hard linear condition with fixed values or with others.
 func (s *Set) Free(start *field.History) (*Unknowns, error) {
 	if err := s.Err(); err != nil {
 		return nil, err
@@ -33,6 +35,9 @@ func (s *Set) Free(start *field.History) (*Unknowns, error) {
 			}
 		}
 	}
+	if err := s.leaveOut(u, start); err != nil {
+		return nil, err
+	}
 	var f *forest
 	if len(s.ties) > 0 {
 		var err error
@@ -42,6 +47,15 @@ func (s *Set) Free(start *field.History) (*Unknowns, error) {
 	}
 	s.holdEnds(u, f, start)
 	u.number(f)
+	if err := u.limit(s, f); err != nil {
+		return nil, err
+	}
+	if err := u.linear(s); err != nil {
+		return nil, err
+	}
+	if err := u.charge(s); err != nil {
+		return nil, err
+	}
 	return u, nil
 }
 

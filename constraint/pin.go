@@ -21,11 +21,8 @@ func (s *Set) Part(n, from, to int, v field.Slice) {
 	if !s.onBlock(n, "part of slice") {
 		return
 	}
-	if from < 0 || to > s.block.Sites() || from >= to {
-		s.fail(fmt.Errorf("constraint: part [%d, %d) of slice %d; want sites 0 ≤ from < to ≤ %d", from, to, n, s.block.Sites()))
-		return
-	}
-	if s.fits(v, to-from, fmt.Sprintf("part [%d, %d) of slice %d", from, to, n)) {
+	name := fmt.Sprintf("part [%d, %d) of slice %d", from, to, n)
+	if s.isPart(name, from, to) && s.fits(v, to-from, name) {
 		s.pinSlice(n, from, v, byPart)
 	}
 }
@@ -34,7 +31,7 @@ func (s *Set) Part(n, from, to int, v field.Slice) {
 // each component of the field.
 func (s *Set) Event(t, x float64, values ...float64) {
 	e := lattice.Event{T: t, X: x}
-	n, i, err := s.block.Index(e)
+	spot, err := s.locate(e)
 	if err != nil {
 		s.fail(fmt.Errorf("constraint: %w", err))
 		return
@@ -49,17 +46,8 @@ func (s *Set) Event(t, x float64, values ...float64) {
 			s.fail(fmt.Errorf("constraint: component %d is pinned to %v at %v; want a finite number", c, v, e))
 			continue
 		}
-		v -= laps(s.block.Space, x, i)*s.block.Space.JumpOf(c) + laps(s.block.Time, t, n)*s.block.Time.JumpOf(c)
-		s.note(s.pin(n, c, i, v, byEvent))
+		s.note(s.pin(spot.slice, c, spot.site, v-s.shift(spot, c), byEvent))
 	}
-}
-
-// laps returns how often one goes around a periodic axis from site i to x.
-func laps(a lattice.Axis, x float64, i int) float64 {
-	if !a.Periodic {
-		return 0
-	}
-	return math.Round((x - a.At(i)) / a.Length())
 }
 
 // Left pins the first site of every slice to functions of time, one for each
@@ -105,6 +93,15 @@ func (s *Set) end(i int, by kind, values []func(t float64) float64) {
 func (s *Set) onBlock(n int, what string) bool {
 	if n < 0 || n >= s.block.Slices() {
 		s.fail(fmt.Errorf("constraint: %s %d; the block has the slices 0 to %d", what, n, s.block.Slices()-1))
+		return false
+	}
+	return true
+}
+
+// isPart reports whether from ≤ i < to are sites.
+func (s *Set) isPart(name string, from, to int) bool {
+	if from < 0 || to > s.block.Sites() || from >= to {
+		s.fail(fmt.Errorf("constraint: %s; want sites 0 ≤ from < to ≤ %d", name, s.block.Sites()))
 		return false
 	}
 	return true

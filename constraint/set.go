@@ -20,6 +20,10 @@ type held struct {
 	needs      int // at least so many, from views
 	rows       map[place]*row
 	ties       []tie
+	penalties  []*Cost
+	linears    []*Linear
+	bounds     map[place]*bounds
+	region     *lattice.Region // nil: the whole block
 	redundant  int
 	problems   problems
 }
@@ -45,17 +49,18 @@ const (
 	byRight
 	byRate
 	byEnd
+	byRegion
 )
 
 // String returns the name of the condition as reactions and conflicts give it.
 func (k kind) String() string {
-	return [...]string{"nothing", "slice", "part", "event", "left end", "right end", "rate", "end of the axis"}[k]
+	return [...]string{"nothing", "slice", "part", "event", "left end", "right end", "rate", "end of the axis", "region"}[k]
 }
 
 // On returns the empty set of conditions on a block. A block that makes no
 // sense is reported by Err.
 func On(b lattice.Block) *Set {
-	s := &Set{held: &held{block: b, rows: make(map[place]*row)}, component: -1}
+	s := &Set{held: &held{block: b, rows: make(map[place]*row), bounds: make(map[place]*bounds)}, component: -1}
 	if _, err := lattice.NewBlock(b.Time, b.Space); err != nil {
 		s.block = lattice.Block{} // without slices every condition is off it
 		s.fail(fmt.Errorf("constraint: %w", err))
@@ -93,7 +98,8 @@ func (s *Set) Err() error {
 	return s.problems
 }
 
-// Events returns the pinned events, each once, by slice and then by site. With
+// Events returns the pinned events, those of Slice, Part, Event, Left and Right,
+// each once, by slice and then by site. With
 // several components an event counts if any of them is pinned.
 func (s *Set) Events() []lattice.Event {
 	var events []lattice.Event
@@ -129,7 +135,7 @@ func (p problems) Error() string {
 // Unwrap returns the errors of the list.
 func (p problems) Unwrap() []error { return p }
 
-func (s *Set) fail(err error) { s.problems = append(s.problems, err) }
+func (s *held) fail(err error) { s.problems = append(s.problems, err) }
 
 // from returns the component to which the first of k components of a condition
 // belongs, and false after reporting a number that does not fit. what names the
@@ -160,4 +166,24 @@ func (s *Set) from(k int, what string) (first int, ok bool) {
 	}
 	s.components = k
 	return 0, true
+}
+
+// one returns the component of a condition on one component, and false after
+// reporting that the field has several. what names the condition.
+func (s *Set) one(what string) (c int, ok bool) {
+	if n := max(s.components, s.needs); s.component < 0 && n > 1 {
+		s.fail(fmt.Errorf("constraint: %s names no component of a field of %d; ask Component(c) of the set", what, n))
+		return 0, false
+	}
+	return s.from(1, what)
+}
+
+// has returns false after reporting that the field has no component c.
+func (s *Set) has(c int, what string) bool {
+	if c < 0 || s.components > 0 && c >= s.components {
+		s.fail(fmt.Errorf("constraint: %s on component %d; the set has %d, counted from 0", what, c, s.components))
+		return false
+	}
+	s.needs = max(s.needs, c+1)
+	return true
 }

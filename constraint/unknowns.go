@@ -7,7 +7,7 @@ import (
 	"github.com/tenter-go/tenter/lattice"
 )
 
-// Unknowns is the map from the values of a history to the numbers that a solver
+// Unknowns is a resolved problem. It is the map from the values of a history to the numbers that a solver
 // may still choose. Value e of the history, e as in field.History.Data, is
 //
 //	x[u] + offset   if it follows unknown u,
@@ -16,16 +16,20 @@ import (
 // Unknowns are numbered in the order of the first value that follows each, so by
 // slice, component and site.
 type Unknowns struct {
-	N         int // number of unknowns
-	Redundant int // conditions that said what others had said
+	N         int      // number of unknowns
+	Redundant int      // conditions that said what others had said
+	Repeats   []string // of them, the linear ones, and what they repeat
 
 	block      lattice.Block
 	components int
 	follows    []int32 // unknown, −1 if fixed
 	offset     []float64
-	by         []kind // what fixes a value
+	by         []kind // what fixes a value; unpinned if nothing
 	tied       []bool // joined to another value by a rate
 	lead       []int  // the value that stands for each unknown
+	terms      []Term
+	hard, soft []Row
+	limits     *limits // nil without bounds
 }
 
 func newUnknowns(b lattice.Block, components int) *Unknowns {

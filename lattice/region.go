@@ -12,8 +12,8 @@ type Region struct {
 	cells []bool // time links × space links
 }
 
-// NewRegion returns the cells of b whose centre is inside. It is an error if
-// there is none.
+// NewRegion returns the cells of b whose centre is inside; a nil function takes
+// them all. It is an error if there is none.
 func NewRegion(b Block, inside func(centre Event) bool) (*Region, error) {
 	if _, err := NewBlock(b.Time, b.Space); err != nil {
 		return nil, err
@@ -22,7 +22,7 @@ func NewRegion(b Block, inside func(centre Event) bool) (*Region, error) {
 	any := false
 	for n := range b.Time.Links() {
 		for i := range b.Space.Links() {
-			in := inside(Event{T: b.Time.Between(n), X: b.Space.Between(i)})
+			in := inside == nil || inside(Event{T: b.Time.Between(n), X: b.Space.Between(i)})
 			r.cells[n*b.Space.Links()+i] = in
 			any = any || in
 		}
@@ -69,6 +69,10 @@ func (r *Region) share(part float64, cells ...[2]int) float64 {
 func (r *Region) Event(n, i int) float64 {
 	return r.share(0.25, [2]int{n - 1, i - 1}, [2]int{n - 1, i}, [2]int{n, i - 1}, [2]int{n, i})
 }
+
+// Inside reports whether event (n, i) is in the region: at a corner of a cell
+// that exists.
+func (r *Region) Inside(n, i int) bool { return r.Event(n, i) > 0 }
 
 // TimeLink returns the weight of the link from event (n, i) to (n+1, i): half
 // for each existing cell beside it.

@@ -10,7 +10,7 @@ import (
 
 func TestRegionWeights(t *testing.T) {
 	b := lattice.Block{Time: lattice.Axis{Step: 0.5, Sites: 5}, Space: lattice.Axis{Step: 0.25, Sites: 9}}
-	whole, err := lattice.NewRegion(b, func(lattice.Event) bool { return true })
+	whole, err := lattice.NewRegion(b, nil)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -45,8 +45,11 @@ func TestRegionWeights(t *testing.T) {
 	if got := l.Event(2, 2); got != 0.75 {
 		t.Errorf("re-entrant corner has the weight %v, want 0.75", got)
 	}
-	if got := l.Event(4, 5); got != 0 {
-		t.Errorf("event outside has the weight %v, want 0", got)
+	if got := l.Event(4, 5); got != 0 || l.Inside(4, 5) {
+		t.Errorf("event outside has the weight %v and Inside %v, want 0 and false", got, l.Inside(4, 5))
+	}
+	if !l.Inside(4, 2) || !l.Inside(0, 8) {
+		t.Error("an event on the rim is not in the region")
 	}
 }
 

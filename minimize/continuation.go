@@ -17,7 +17,7 @@ import (
 // conditions on it. Either may depend on p, the steps of the block as well, but
 // not the number of its events or which of them are free. nil conditions hold
 // nothing. It is asked for values a little beside those of the branch, too, and up
-// to a step beyond its end.
+// to a step beyond its end. Linear conditions and bounds are refused.
 type Family func(p float64) (Functional, *constraint.Set, error)
 
 // ContinuationSettings of Continue. The zero value works; so does a nil pointer.
@@ -86,7 +86,7 @@ type Point struct {
 	Parameter float64
 	Arc       float64        // length of arc from the start
 	Slope     float64        // d(parameter)/d(arc); changes sign at a fold
-	Action    float64        // S
+	Action    float64        // S, and the cost of soft conditions
 	Gradient  Norm           // of ∂S/∂φ/hk over the free events
 	History   *field.History // nil for passing points if the settings are Lean
 

@@ -3,8 +3,10 @@ package minimize
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"github.com/tenter-go/tenter/action"
+	"github.com/tenter-go/tenter/constraint"
 )
 
 // A descent is what a flow runs down: a cost of the unknowns with its gradient and
@@ -14,8 +16,9 @@ type descent interface {
 	base() *problem
 	cost() float64
 
-	// gradient returns ∂cost/∂x in units of unit, and second the matrix in the
-	// same unit, both at the best history.
+	// gradient returns ∂cost/∂x in units of unit, less what hard linear
+	// conditions and active bounds take up, and second the matrix in the same
+	// unit, both at the best history.
 	gradient() []float64
 	second() (matrix symmetric, diagonal []int)
 	unit() float64
@@ -46,13 +49,13 @@ func newActionDescent(p *problem) (*actionDescent, error) {
 
 func (d *actionDescent) base() *problem      { return d.problem }
 func (d *actionDescent) cost() float64       { return d.value }
-func (d *actionDescent) gradient() []float64 { return d.grad }
+func (d *actionDescent) gradient() []float64 { return d.pure }
 func (d *actionDescent) unit() float64       { return d.hk }
 
 func (d *actionDescent) second() (symmetric, []int) {
 	d.minimum.second = d.f.SecondVariationMatrix(d.minimum.second, d.h)
 	d.hess.assemble(d.minimum.second)
-	return symmetric{d.hess.pattern, d.hess.values}, d.hess.diagonal
+	return symmetric{d.hess.pattern, d.hess.values, d.softRows()}, d.hess.diagonal
 }
 
 func (d *actionDescent) move(delta []float64) bool {
@@ -61,6 +64,7 @@ func (d *actionDescent) move(delta []float64) bool {
 		return false
 	}
 	d.accept(value)
+	d.purify(d.grad, d.h)
 	return true
 }
 
@@ -69,7 +73,7 @@ func (d *actionDescent) solved(thorough bool) (bool, string) {
 		keepTolerance(&d.rep, d.measure)
 	} else {
 		d.rep.After.Max = 0
-		for _, g := range d.grad {
+		for _, g := range d.pure {
 			d.rep.After.Max = max(d.rep.After.Max, math.Abs(g)/d.hk)
 		}
 	}
@@ -80,6 +84,7 @@ func (d *actionDescent) solved(thorough bool) (bool, string) {
 type residualDescent struct {
 	*least
 	diagonal []int
+	pure     []float64
 }
 
 func newResidualDescent(p *problem, s *action.Discrete) (*residualDescent, error) {
@@ -87,18 +92,28 @@ func newResidualDescent(p *problem, s *action.Discrete) (*residualDescent, error
 	if err := l.begin(); err != nil {
 		return nil, err
 	}
-	l.differentiate()
-	return &residualDescent{least: l, diagonal: l.normal.diagonal}, nil
+	d := &residualDescent{least: l, diagonal: l.normal.diagonal, pure: make([]float64, p.free.N)}
+	d.slope()
+	return d, nil
 }
 
 func (d *residualDescent) base() *problem      { return d.problem }
 func (d *residualDescent) cost() float64       { return d.least.cost(d.sum) }
-func (d *residualDescent) gradient() []float64 { return d.grad }
+func (d *residualDescent) gradient() []float64 { return d.pure }
 func (d *residualDescent) unit() float64       { return d.set.ResidualScale * d.set.ResidualScale }
 
 func (d *residualDescent) second() (symmetric, []int) {
-	d.normal.assemble(d.jac)
-	return symmetric{d.normal.pattern, d.normal.values}, d.diagonal
+	d.assemble()
+	return symmetric{d.normal.pattern, d.normal.values, d.softRows()}, d.diagonal
+}
+
+// slope evaluates the gradient at the best history.
+func (d *residualDescent) slope() {
+	d.differentiate()
+	copy(d.pure, d.grad)
+	if d.hard != nil {
+		d.hard.tangent(d.pure, d.grad, d.hard.multipliers(d.grad))
+	}
 }
 
 func (d *residualDescent) move(delta []float64) bool {
@@ -107,7 +122,7 @@ func (d *residualDescent) move(delta []float64) bool {
 		return false
 	}
 	d.accept(sum)
-	d.differentiate()
+	d.slope()
 	return true
 }
 
@@ -138,6 +153,16 @@ type Unstable struct {
 func (e *Unstable) Error() string {
 	return fmt.Sprintf("minimize: step %g is above the stability limit of %s: largest eigenvalue %.6g, limit %.6g; want a step below it, or implicit steps",
 		e.Step, e.Flow, e.Eigenvalue, e.Largest)
+}
+
+// softRows returns the soft linear conditions with precisions in the unit of the
+// matrix.
+func (p *problem) softRows() []constraint.Row {
+	rows := slices.Clone(p.free.SoftRows())
+	for k := range rows {
+		rows[k].Precision /= p.unit
+	}
+	return rows
 }
 
 // factorise prepares implicit steps, or returns a *TooLarge.

@@ -56,12 +56,18 @@
 //
 // # Conditions
 //
-// Conditions come from package constraint and hold exactly. Ends of kind Held and
-// Odd, which have no equation, stay at the values of the start history unless the
-// conditions pin them. Each condition has a reaction: −∂S/∂φ for a minimum, the
-// impulse of the source that would have to be added there; the multiplier
-// ∂cost/∂φ for the least residual. Both vanish where a pin asks for nothing that
-// the equation would not do by itself.
+// Conditions come from package constraint. Pins and ties are eliminated. Hard
+// linear conditions border the matrix, so that steps keep them; so do soft ones,
+// with their precision. Observations and cost conditions add to the action or to
+// the cost, and a solve settles their compromise with it: for a Gaussian problem
+// that is the posterior mean of Gauss and Markov. Bounds are kept by an active
+// set, in Minimum only. Ends of kind Held and Odd, which have no equation, stay at
+// the values of the start history unless the conditions pin them.
+//
+// Each hard condition has a reaction: −∂S/∂φ for a minimum, the impulse of the
+// source that would have to be added there; the multiplier ∂cost/∂φ for the
+// least residual. Both vanish where a pin asks for nothing that the equation would
+// not do by itself. Each soft condition has a misfit.
 //
 // # Outcome
 //

@@ -11,7 +11,7 @@ import (
 )
 
 // equations are the stationary equations ∂S/∂φ = 0 of the unknowns of one
-// problem, of either signature.
+// problem, of either signature, S with the cost of soft conditions.
 type equations struct {
 	*problem
 	leads  []int32
@@ -28,6 +28,9 @@ func newEquations(name string, f Functional, held *constraint.Set, start *field.
 	p, err := newProblem(name, f, held, start, set)
 	if err != nil {
 		return nil, err
+	}
+	if p.hard != nil || p.bounds != nil || len(p.free.SoftRows()) > 0 {
+		return nil, &Refusal{Problem: name, Why: "linear conditions or bounds; want pins, rates, costs and observations only"}
 	}
 	q := &equations{problem: p}
 	for k := range p.free.N {

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"runtime"
+	"slices"
 
 	"github.com/tenter-go/tenter/internal/nested"
 )
@@ -38,11 +39,29 @@ func (c *cholesky) Factor(values []float64) (err error) {
 
 func (c *cholesky) Solve(dst, b []float64) { c.factor.Solve(dst, b) }
 
-// factoriser returns the factoriser of a pattern, or a *TooLarge.
+// factoriser returns the factoriser of a pattern, bordered by the linear
+// conditions if there are any, or a *TooLarge.
 func (p *problem) factoriser(pattern *nested.Pattern, suggestion string) (factoriser, error) {
-	symbolic, err := nested.Analyse(*pattern)
-	if err != nil {
-		return nil, fmt.Errorf("minimize: %w", err)
+	var f factoriser
+	var symbolic *nested.Symbolic
+	if rows := append(slices.Clone(p.free.HardRows()), p.free.SoftRows()...); len(rows) > 0 {
+		for k := range rows {
+			rows[k].Precision /= p.unit
+		}
+		b, err := newBordered(pattern, rows)
+		if err != nil {
+			return nil, err
+		}
+		if p.bounds != nil {
+			b.held = p.bounds.active
+		}
+		f, symbolic = b, b.symbolic
+	} else {
+		s, err := nested.Analyse(*pattern)
+		if err != nil {
+			return nil, fmt.Errorf("minimize: %w", err)
+		}
+		f, symbolic = &cholesky{symbolic: s}, s
 	}
 	size := symbolic.Stats()
 	if float64(size.Bytes) > p.set.Memory || size.Flops > p.set.Work {
@@ -52,7 +71,7 @@ func (p *problem) factoriser(pattern *nested.Pattern, suggestion string) (factor
 		}
 	}
 	p.rep.Front = size.LargestFront
-	return &cholesky{symbolic: symbolic}, nil
+	return f, nil
 }
 
 // singular says where a factorisation failed.

@@ -128,50 +128,92 @@ func (f *flow) run(ctx context.Context) (*Relaxed, error) {
 
 // step finds the change δ of a step Δτ.
 func (f *flow) step(step float64) error {
-	g, unit, friction := f.gradient(), f.unit(), f.set.Friction
 	if f.solver != nil {
-		a, diagonal := f.second()
-		copy(f.damped, a.values)
-		shift := 1 / step
-		if friction > 0 {
-			shift = friction/step + 1/(step*step)
-		}
-		for _, at := range diagonal {
-			f.damped[at] += unit * shift
-		}
-		p := f.base()
-		p.rep.Factorisations++
-		if err := f.solver.Factor(f.damped); err != nil {
+		if err := f.implicit(step); err != nil {
 			return err
 		}
-		for u, v := range g {
-			f.delta[u] = -v
-			if friction > 0 {
-				f.delta[u] += unit * f.speed[u] / step
-			}
-		}
-		f.solver.Solve(f.delta, f.delta)
-		for u, v := range f.delta {
-			f.speed[u] = v / step
-		}
-		return nil
+	} else {
+		f.explicit(step)
 	}
-	if friction == 0 {
-		for u, v := range g {
-			f.delta[u] = -step * v / unit
-			f.speed[u] = -v / unit
-		}
-		return nil
-	}
-	keep, kick := 1-0.5*friction*step, step
-	if f.base().rep.Iterations == 0 { // from rest, half a step to where speeds live
-		keep, kick = 0, 0.5*step
-	}
-	for u, v := range g {
-		f.speed[u] = (keep*f.speed[u] - kick*v/unit) / (1 + 0.5*friction*step)
-		f.delta[u] = step * f.speed[u]
+	f.confine()
+	// what the bounds have let through
+	for u, v := range f.delta {
+		f.speed[u] = v / step
 	}
 	return nil
+}
+
+// implicit finds δ by a linearly implicit Euler step.
+func (f *flow) implicit(step float64) error {
+	unit, friction, p := f.unit(), f.set.Friction, f.base()
+	a, diagonal := f.second()
+	copy(f.damped, a.values)
+	shift := 1 / step
+	if friction > 0 {
+		shift = friction/step + 1/(step*step)
+	}
+	for _, at := range diagonal {
+		f.damped[at] += unit * shift
+	}
+	if p.bounds != nil {
+		p.bounds.isolate(a.Pattern, f.damped)
+	}
+	p.rep.Factorisations++
+	if err := f.solver.Factor(f.damped); err != nil {
+		return err
+	}
+	for u, v := range f.gradient() {
+		f.delta[u] = -v
+		if friction > 0 {
+			f.delta[u] += unit * f.speed[u] / step
+		}
+	}
+	f.stop()
+	f.solver.Solve(f.delta, f.delta)
+	return nil
+}
+
+// explicit finds δ by an Euler step, with friction by one of leapfrog.
+func (f *flow) explicit(step float64) {
+	unit, friction := f.unit(), f.set.Friction
+	keep, kick := 0.0, 1.0
+	if friction > 0 {
+		keep, kick = (1-0.5*friction*step)/(1+0.5*friction*step), step/(1+0.5*friction*step)
+		if f.base().rep.Iterations == 0 { // from rest, half a step to where speeds live
+			keep, kick = 0, 0.5*kick
+		}
+	}
+	for u, v := range f.gradient() {
+		f.delta[u] = step * (keep*f.speed[u] - kick*v/unit)
+	}
+	f.stop()
+}
+
+// stop holds the unknowns that are pushed against a bound.
+func (f *flow) stop() {
+	p := f.base()
+	if p.bounds == nil {
+		return
+	}
+	for u, active := range p.bounds.active {
+		if active {
+			f.delta[u] = 0
+		}
+	}
+}
+
+// confine cuts the step at the bounds.
+func (f *flow) confine() {
+	p := f.base()
+	if p.bounds == nil {
+		return
+	}
+	x := p.free.Gather(nil, p.h)
+	if p.hard != nil {
+		p.bounds.shorten(f.delta, x)
+	} else {
+		p.bounds.cut(f.delta, x)
+	}
 }
 
 // still reports whether the flow has come to rest: with friction, whether the

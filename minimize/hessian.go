@@ -71,3 +71,21 @@ func (h *hessian) largest() float64 {
 	}
 	return d
 }
+
+// quadratic returns δᵀHδ.
+func (h *hessian) quadratic(delta []float64) float64 {
+	var sum float64
+	p := h.pattern
+	for i := range p.N {
+		row := 0.0
+		for k := p.Ptr[i]; k < p.Ptr[i+1]; k++ {
+			if j := int(p.Adj[k]); j != i {
+				row += 2 * h.values[k] * delta[j]
+			} else {
+				row += h.values[k] * delta[j]
+			}
+		}
+		sum += row * delta[i]
+	}
+	return sum
+}

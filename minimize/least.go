@@ -13,7 +13,7 @@ import (
 // LeastResidual finds a history that satisfies the conditions exactly and the
 // field equation as well as it can: it minimises the cost
 //
-//	C = Σ hk r²/2q²
+//	C = Σ hk r²/2q² + what the soft conditions cost
 //
 // over the free values, r being the residual of the field equation per hk
 // (action.Discrete.Residual) at every event of every interior slice, pinned
@@ -48,6 +48,10 @@ func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 	if err != nil {
 		return nil, err
 	}
+	if p.bounds != nil {
+		return nil, &Refusal{Problem: problemResidual, Why: "bounds; they belong to the minimum of an action"}
+	}
+	p.unit = p.hk / (p.set.ResidualScale * p.set.ResidualScale)
 	l, err := newLeast(p, s)
 	if err != nil {
 		return nil, err
@@ -66,7 +70,9 @@ type least struct {
 	grad, size    []float64      // Jᵀr and Σ|Jr|
 	damped        []float64      // values of JᵀJ + λ
 	delta, curved []float64      // the step without and with its curvature
-	sum           float64        // Σ r²
+	soft          bool           // the cost has terms beside the residual
+	extra         *field.History // gradient or curvature of those
+	sum           float64        // 2C/unit: Σ r², and the soft conditions
 }
 
 func newLeast(p *problem, s *action.Discrete) (*least, error) {
@@ -100,7 +106,10 @@ func (l *least) begin() error {
 	l.jac = l.s.ResidualJacobian(nil, l.h)
 	l.normal = newNormal(l.jac, rows, l.free, l.grid())
 	l.grad, l.size = make([]float64, l.free.N), make([]float64, l.free.N)
-	l.sum = l.squares(l.res.Data, rows)
+	if t := l.free.Tally(); t.Terms+t.Soft > 0 {
+		l.soft, l.extra = true, l.res.Clone()
+	}
+	l.sum = l.total(l.h, l.res)
 	l.rep.Rows = len(rows)
 	l.rep.Push = "∂cost/∂φ at the event, the multiplier of the pin"
 	return nil
@@ -151,27 +160,64 @@ func (l *least) squares(r []float64, rows []int32) float64 {
 	return sum
 }
 
-// cost returns Σ hk r²/2q² for Σ r².
-func (l *least) cost(sum float64) float64 {
-	return 0.5 * l.hk * sum / (l.set.ResidualScale * l.set.ResidualScale)
+// total returns 2C/unit of the history h, whose residual is r.
+func (l *least) total(h, r *field.History) float64 {
+	sum := l.squares(r.Data, l.normal.rows)
+	if l.soft {
+		sum += 2 * l.free.Cost(h) / l.unit
+	}
+	return sum
 }
 
-// linearise evaluates Jacobian, normal matrix and gradient at h.
+// cost returns C for the total 2C/unit.
+func (l *least) cost(sum float64) float64 { return 0.5 * l.unit * sum }
+
+// linearise evaluates Jacobian, gradient and normal matrix at h.
 func (l *least) linearise() {
 	l.differentiate()
-	l.normal.assemble(l.jac)
+	l.assemble()
 }
 
-// differentiate evaluates Jacobian and gradient at h.
+// differentiate evaluates Jacobian and gradient at h, soft conditions included.
 func (l *least) differentiate() {
 	l.jac = l.s.ResidualJacobian(l.jac, l.h)
 	l.normal.gradient(l.grad, l.size, l.jac, l.res.Data)
+	if !l.soft {
+		return
+	}
+	clear(l.extra.Data)
+	l.free.AddGradient(l.extra, l.h)
+	for u, g := range l.free.Reduce(nil, l.extra) {
+		l.grad[u] += g / l.unit
+		l.size[u] += math.Abs(g) / l.unit
+	}
 }
 
-// flat returns the largest |Jᵀr| over its size before cancellation.
+// assemble writes the normal matrix of the Jacobian at hand, with the curvature
+// of soft conditions where it is positive. Soft linear conditions border the
+// matrix.
+func (l *least) assemble() {
+	l.normal.assemble(l.jac)
+	if !l.soft {
+		return
+	}
+	clear(l.extra.Data)
+	l.free.AddCurvature(l.extra, l.h)
+	for u, c := range l.free.Reduce(nil, l.extra) {
+		l.normal.values[l.normal.diagonal[u]] += max(0, c) / l.unit
+	}
+}
+
+// flat returns the largest gradient of the cost, less what hard linear
+// conditions take up, over its size before cancellation.
 func (l *least) flat() float64 {
 	var g, size float64
-	for u, v := range l.grad {
+	grad := l.grad
+	if l.hard != nil {
+		grad = make([]float64, len(l.grad))
+		l.hard.tangent(grad, l.grad, l.hard.multipliers(l.grad))
+	}
+	for u, v := range grad {
 		g, size = max(g, math.Abs(v)), max(size, l.size[u])
 	}
 	if size == 0 {
@@ -208,11 +254,11 @@ func (l *least) try(lambda float64) (sum, predicted float64) {
 	return l.evaluate(l.delta), predicted
 }
 
-// evaluate moves the trial to h + δ and returns Σ r² there.
+// evaluate moves the trial to h + δ and returns the total there.
 func (l *least) evaluate(delta []float64) float64 {
 	l.move(delta)
 	l.trialRes = l.s.Residual(l.trialRes, l.trial)
-	return l.squares(l.trialRes.Data, l.normal.rows)
+	return l.total(l.trial, l.trialRes)
 }
 
 // accept makes the trial the best history.
@@ -286,7 +332,7 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 
 // solved reports whether the history is a solution, and why.
 func (l *least) solved() (done bool, reason string) {
-	if l.rep.After.Max <= l.rep.Tolerance {
+	if l.rep.After.Max <= l.rep.Tolerance && !l.soft {
 		return true, "residual within the tolerance"
 	}
 	if l.rep.Flat <= l.set.Flatness {
@@ -299,7 +345,7 @@ func (l *least) solved() (done bool, reason string) {
 // they halve the largest residual.
 func (l *least) polish(ctx context.Context, d *damping, reason string) (*Found, error) {
 	d.lambda = d.least
-	if l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.factor(d.lambda) != nil {
+	if l.soft || l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.factor(d.lambda) != nil {
 		return l.finish(Converged, reason, nil)
 	}
 	const most = 20
@@ -335,8 +381,15 @@ func (l *least) finish(status Status, reason string, cause error) (*Found, error
 	r := l.trialRes.Data
 	clear(r)
 	for _, e := range l.normal.rows {
-		r[e] = l.res.Data[e] * l.hk / (l.set.ResidualScale * l.set.ResidualScale)
+		r[e] = l.res.Data[e] * l.unit
 	}
 	l.jac.MulTransVec(push.Data, r)
-	return l.end(status, reason, cause, push)
+	if l.soft {
+		l.free.AddGradient(push, l.h)
+	}
+	var by constraint.Multipliers
+	if l.hard != nil {
+		by.Rows = l.hard.multipliers(l.free.Reduce(nil, push))
+	}
+	return l.end(status, reason, cause, push, by)
 }

@@ -54,12 +54,15 @@ func Minimum(ctx context.Context, f Functional, held *constraint.Set, start *fie
 	if err := m.begin(); err != nil {
 		return nil, err
 	}
+	if p.set.Method == LBFGS && (p.hard != nil || p.bounds != nil) {
+		return nil, &Refusal{Problem: problemMinimum, Why: "L-BFGS with hard linear conditions or bounds; want Newton"}
+	}
 	if p.set.Method != LBFGS {
 		err := m.analyse()
 		if err == nil {
 			return m.newton(ctx)
 		}
-		if large := (*TooLarge)(nil); p.set.Method == Newton || !errors.As(err, &large) {
+		if large := (*TooLarge)(nil); p.set.Method == Newton || p.hard != nil || p.bounds != nil || !errors.As(err, &large) {
 			return nil, err
 		}
 		m.hess = nil
@@ -79,6 +82,7 @@ type minimum struct {
 	solver            factoriser
 	slope, trialSlope *field.History // ∂S/∂φ of h and trial
 	grad, trialGrad   []float64      // the same by the unknowns
+	pure, x           []float64      // gradient without what conditions take up; unknowns
 	value             float64        // S of h
 	damped, delta     []float64
 }
@@ -91,7 +95,9 @@ func (m *minimum) begin() error {
 	m.second = m.f.SecondVariationMatrix(nil, m.h)
 	m.slope = m.f.Gradient(nil, m.h)
 	m.trialSlope = m.slope.Clone()
-	m.grad, m.trialGrad = make([]float64, m.free.N), make([]float64, m.free.N)
+	for _, v := range []*[]float64{&m.grad, &m.trialGrad, &m.pure, &m.x} {
+		*v = make([]float64, m.free.N)
+	}
 	m.free.Reduce(m.grad, m.slope)
 	m.value = m.f.Value(m.h)
 	m.measure()
@@ -116,10 +122,47 @@ func (m *minimum) evaluate(delta []float64) (value, largest float64) {
 	value = m.f.Value(m.trial)
 	m.trialSlope = m.f.Gradient(m.trialSlope, m.trial)
 	m.free.Reduce(m.trialGrad, m.trialSlope)
-	for _, g := range m.trialGrad {
+	m.purify(m.trialGrad, m.trial)
+	for _, g := range m.pure {
 		largest = max(largest, math.Abs(g)/m.hk)
 	}
 	return value, largest
+}
+
+// purify writes the gradient g at the history h to pure, less what hard linear
+// conditions and active bounds take up, and returns the multipliers of the
+// former. It chooses the active bounds.
+func (m *minimum) purify(g []float64, h *field.History) (mu []float64) {
+	copy(m.pure, g)
+	if m.bounds == nil {
+		if m.hard != nil {
+			mu = m.hard.multipliers(g)
+			m.hard.tangent(m.pure, g, mu)
+		}
+		return mu
+	}
+	m.free.Gather(m.x, h)
+	// The multipliers depend on the active bounds and these on them.
+	const passes = 3
+	for range passes {
+		if m.hard != nil {
+			if m.hard.hold(m.bounds.active) != nil {
+				m.hard.hold(nil)
+			}
+			mu = m.hard.multipliers(g)
+			m.hard.tangent(m.pure, g, mu)
+		}
+		m.bounds.choose(m.x, m.pure)
+		if m.hard == nil {
+			break
+		}
+	}
+	for u, active := range m.bounds.active {
+		if active {
+			m.pure[u] = 0
+		}
+	}
+	return mu
 }
 
 // accept makes the trial the best history.
@@ -134,10 +177,11 @@ func (m *minimum) accept(value float64) {
 func (m *minimum) measure() {
 	m.second = m.f.SecondVariationMatrix(m.second, m.h)
 	// the gradient by the unknowns, per hk, at the values that lead them
+	m.purify(m.grad, m.h)
 	reduced := m.trialSlope
 	clear(reduced.Data)
 	for k, e := range m.leads {
-		reduced.Data[e] = m.grad[k] / m.hk
+		reduced.Data[e] = m.pure[k] / m.hk
 	}
 	r := &m.rep
 	r.After = m.norm(reduced.Data, m.leads)
@@ -156,5 +200,23 @@ func (m *minimum) finish(status Status, reason string, cause error) (*Found, err
 	for e, g := range m.slope.Data {
 		push.Data[e] = -g
 	}
-	return m.end(status, reason, cause, push)
+	var by constraint.Multipliers
+	mu := m.purify(m.grad, m.h)
+	for _, v := range mu {
+		by.Rows = append(by.Rows, -v)
+	}
+	if m.bounds != nil {
+		by.Bounds = make([]float64, m.free.N)
+		rest := m.grad
+		if m.hard != nil {
+			rest = make([]float64, m.free.N)
+			m.hard.tangent(rest, m.grad, mu)
+		}
+		for u, active := range m.bounds.active {
+			if active {
+				by.Bounds[u] = -rest[u]
+			}
+		}
+	}
+	return m.end(status, reason, cause, push, by)
 }

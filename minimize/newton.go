@@ -69,19 +69,47 @@ func (m *minimum) factor(lambda float64) error {
 	for _, at := range m.hess.diagonal {
 		m.damped[at] += lambda
 	}
+	if m.bounds != nil {
+		m.bounds.isolate(m.hess.pattern, m.damped)
+	}
 	m.rep.Factorisations++
 	return m.solver.Factor(m.damped)
 }
 
 // direction solves for the step δ and returns the decrease of the action that
-// the quadratic model predicts, ½δᵀ(λδ − g).
+// the quadratic model predicts, −gᵀδ − ½δᵀHδ.
 func (m *minimum) direction(lambda float64) (predicted float64) {
 	for u, g := range m.grad {
 		m.delta[u] = -g
 	}
+	if m.bounds == nil {
+		m.solver.Solve(m.delta, m.delta)
+		for u, d := range m.delta { // Hδ = −g − λδ
+			predicted += 0.5 * d * (lambda*d - m.grad[u])
+		}
+		return predicted
+	}
+	for u, active := range m.bounds.active {
+		if active {
+			m.delta[u] = 0
+		}
+	}
 	m.solver.Solve(m.delta, m.delta)
+	if m.free.Gather(m.x, m.h); m.hard == nil {
+		m.bounds.cut(m.delta, m.x)
+	} else {
+		m.bounds.shorten(m.delta, m.x)
+	}
 	for u, d := range m.delta {
-		predicted += 0.5 * d * (lambda*d - m.grad[u])
+		predicted -= m.grad[u] * d
+	}
+	predicted -= 0.5 * m.hess.quadratic(m.delta)
+	for _, row := range m.free.SoftRows() {
+		var along float64
+		for k, u := range row.Unknown {
+			along += row.Weight[k] * m.delta[u]
+		}
+		predicted -= 0.5 * row.Precision * along * along
 	}
 	return predicted
 }

@@ -7,6 +7,7 @@ import (
 	"math"
 
 	"github.com/tenter-go/tenter/action"
+	"github.com/tenter-go/tenter/constraint"
 	"github.com/tenter-go/tenter/field"
 	"github.com/tenter-go/tenter/lattice"
 )
@@ -325,7 +326,7 @@ func (o *orbit) finish(status Status, reason string, cause error) (*Orbit, error
 		o.slope.Data[e] = -v
 	}
 	o.h.Block = o.s.at(o.period)
-	found, err := o.end(status, reason, cause, o.slope)
+	found, err := o.end(status, reason, cause, o.slope, constraint.Multipliers{})
 	return &Orbit{
 		Found: found, Period: o.period, Frequency: 2 * math.Pi / o.period,
 		Energy: -o.value[1], Action: o.value[0], Holding: holding,

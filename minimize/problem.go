@@ -16,14 +16,17 @@ import (
 // A problem is what every solve starts from: the action, what is free, and the
 // best history so far.
 type problem struct {
-	f     Functional
-	free  *constraint.Unknowns
-	set   Settings
-	hk    float64
-	h     *field.History // best history so far; satisfies the conditions
-	trial *field.History
-	began time.Time
-	rep   Report
+	f      Functional
+	free   *constraint.Unknowns
+	hard   *linear // nil without hard linear conditions
+	bounds *bounds // nil without bounds
+	set    Settings
+	hk     float64
+	unit   float64        // of the matrix that is factorised: 1, or hk/q² for the least residual
+	h      *field.History // best history so far; satisfies the conditions
+	trial  *field.History
+	began  time.Time
+	rep    Report
 }
 
 // newProblem checks what a caller hands to a solver called name and adjusts the
@@ -61,10 +64,46 @@ func newProblem(name string, f Functional, held *constraint.Set, start *field.Hi
 	if free.N == 0 {
 		return nil, fmt.Errorf("minimize: %s with all %d values held and none free; remove a condition", name, free.Values())
 	}
-	free.Scatter(h, free.Gather(nil, h))
-	p := &problem{f: f, free: free, set: c, hk: b.Time.Step * b.Space.Step, h: h, trial: h.Clone(), began: time.Now()}
+	p := &problem{f: f, free: free, set: c, hk: b.Time.Step * b.Space.Step, unit: 1, h: h, began: time.Now()}
+	if err := p.adjust(); err != nil {
+		return nil, err
+	}
+	p.trial = h.Clone()
+	if t := free.Tally(); t.Terms+t.Soft > 0 {
+		p.f = &softened{Functional: f, free: free}
+	}
 	p.rep = Report{Problem: name, Unknowns: free.N, Fixed: free.Fixed(), Redundant: free.Redundant}
 	return p, nil
+}
+
+// adjust moves the start history to the conditions: pins, then bounds, then hard
+// linear conditions at the least distance.
+func (p *problem) adjust() (err error) {
+	if p.hard, err = newLinear(p.free.HardRows()); err != nil {
+		return err
+	}
+	p.bounds = newBounds(p.free.Bounds())
+	x := p.free.Gather(nil, p.h)
+	const most = 100 // alternating projections
+	for range most {
+		p.free.Clamp(x)
+		if p.hard == nil {
+			break
+		}
+		p.hard.project(x)
+		if p.bounds == nil {
+			break
+		}
+	}
+	if p.bounds != nil && p.free.Clamp(x) > 0 && p.hard != nil {
+		for _, row := range p.hard.rows {
+			if miss := row.Miss(x); math.Abs(miss) > 1e-9*(1+math.Abs(row.Value)) {
+				return fmt.Errorf("minimize: %s at %v misses %g by %.3g within the bounds; want looser bounds or a start that meets both", row.Name, row.Event, row.Value, miss)
+			}
+		}
+	}
+	p.free.Scatter(p.h, x)
+	return nil
 }
 
 func sameAxis(a, b lattice.Axis) bool {
@@ -128,10 +167,10 @@ func (p *problem) step(s Step) {
 }
 
 // end completes the report. The error is nil only for Converged.
-func (p *problem) end(status Status, reason string, cause error, push *field.History) (*Found, error) {
+func (p *problem) end(status Status, reason string, cause error, push *field.History, by constraint.Multipliers) (*Found, error) {
 	p.rep.Status, p.rep.Reason = status, reason
 	p.rep.Wall = time.Since(p.began)
-	found := &Found{History: p.h, Report: p.rep, Reactions: p.free.Reactions(p.h, push)}
+	found := &Found{History: p.h, Report: p.rep, Reactions: p.free.ReactionsWith(p.h, push, by), Misfits: p.free.Misfits(p.h)}
 	if status == Converged {
 		return found, nil
 	}

@@ -82,7 +82,9 @@ const (
 //
 //	φ_τ = −G  or  φ_ττ + γφ_τ = −G,  G = (1/hk)∂S/∂φ,
 //
-// at every free value, conditions being kept. That is the heat flow of an elliptic
+// at every free value. Soft conditions add their cost to S, hard linear ones keep
+// the flow in their plane, and bounds stop what runs against them, as a membrane
+// that comes to lie on an obstacle. That is the heat flow of an elliptic
 // problem, and its minima are the histories at rest. Minimum finds them faster;
 // a flow shows the way. G of an event at a free end, whose share of a cell is
 // half, counts half.
@@ -146,6 +148,10 @@ func RelaxResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 	if err != nil {
 		return nil, err
 	}
+	if p.bounds != nil {
+		return nil, &Refusal{Problem: problemRelaxResidual, Why: "bounds; they belong to the flow of an action"}
+	}
+	p.unit = p.hk / (p.set.ResidualScale * p.set.ResidualScale)
 	d, err := newResidualDescent(p, s)
 	if err != nil {
 		return nil, err

@@ -34,9 +34,13 @@ type Found struct {
 	History *field.History
 	Report  Report
 
-	// Reactions of all pins, ties and held ends, the largest |Push| first. What
-	// Push means is Report.Push.
+	// Reactions of all hard conditions: pins, ties, held ends, linear conditions
+	// and active bounds, the largest |Push| first. What Push means is
+	// Report.Push.
 	Reactions []constraint.Reaction
+
+	// Misfits of all soft conditions, the largest |Sigmas| first.
+	Misfits []constraint.Misfit
 }
 
 // A Norm is the size of a residual or gradient over its rows.

@@ -3,15 +3,17 @@ package minimize
 import (
 	"math"
 
+	"github.com/tenter-go/tenter/constraint"
 	"github.com/tenter-go/tenter/internal/nested"
 	"gonum.org/v1/gonum/mat"
 )
 
-// symmetric is a sparse symmetric matrix: the lower triangle of a pattern and its
-// values.
+// symmetric is a sparse symmetric matrix, the lower triangle of a pattern and its
+// values, plus Σp aaᵀ over the soft linear conditions of weights a and precision p.
 type symmetric struct {
 	*nested.Pattern
 	values []float64
+	soft   []constraint.Row
 }
 
 // mul writes the matrix times x to dst.
@@ -26,10 +28,20 @@ func (a symmetric) mul(dst, x []float64) {
 			}
 		}
 	}
+	for _, row := range a.soft {
+		var along float64
+		for k, u := range row.Unknown {
+			along += row.Weight[k] * x[u]
+		}
+		for k, u := range row.Unknown {
+			dst[u] += row.Precision * along * row.Weight[k]
+		}
+	}
 }
 
 // bound returns max Σ|aᵢⱼ| over the rows, which no eigenvalue exceeds
-// [Gershgorin 1931, Izv. Akad. Nauk SSSR 7, 749].
+// [Gershgorin 1931, Izv. Akad. Nauk SSSR 7, 749], and the largest eigenvalue of
+// each soft condition on top.
 func (a symmetric) bound() float64 {
 	sum := make([]float64, a.N)
 	for i := range a.N {
@@ -44,6 +56,9 @@ func (a symmetric) bound() float64 {
 	var top float64
 	for _, s := range sum {
 		top = max(top, s)
+	}
+	for _, row := range a.soft {
+		top += row.Precision * math.Pow(length(row.Weight), 2)
 	}
 	return top
 }

@@ -3,7 +3,6 @@ package actiontest
 import (
 	"errors"
 	"fmt"
-	"math/rand/v2"
 
 	"github.com/tenter-go/tenter/action"
 	"github.com/tenter-go/tenter/field"
@@ -91,19 +90,13 @@ func describe(b lattice.Block) string {
 
 // discrete is what is tested of an action on a block; *action.Discrete has it.
 type discrete interface {
-	Block() lattice.Block
-	Components() int
+	Action
 	Density() action.Wave
-	Conservative() error
 	BetweenSlices() error
 	Interior(n int) bool
 	HeldLeft() bool
 	HeldRight() bool
 
-	Value(h *field.History) float64
-	Gradient(dst, h *field.History) *field.History
-	SecondVariation(dst, h, direction *field.History) *field.History
-	SecondVariationMatrix(dst *action.Matrix, h *field.History) *action.Matrix
 	Residual(dst, h *field.History) *field.History
 	ResidualJacobian(dst *action.Matrix, h *field.History) *action.Matrix
 
@@ -150,20 +143,15 @@ func subjectOf(a *action.Discrete) subject {
 	return v
 }
 
-// An examination is a subject with a history to test it on.
+// An examination is a trial of a subject.
 type examination struct {
+	*trial
 	subject
-	s     Settings
-	r     *rand.Rand
-	h     *field.History
-	found findings
 }
 
 func checkDiscrete(v subject, s Settings) error {
 	b := v.Block()
-	e := &examination{subject: v, s: s, r: s.random(), h: field.NewHistory(b, v.Components())}
-	e.found.where = "; " + describe(b)
-	s.draw(e.r, e.h.Data)
+	e := &examination{trial: newTrial(v, s), subject: v}
 	e.gradient()
 	e.secondVariation()
 	e.residual()
@@ -178,33 +166,4 @@ func checkDiscrete(v subject, s Settings) error {
 		e.totalBalance()
 	}
 	return e.found.err()
-}
-
-// direction returns a random history with values between −1 and 1.
-func (e *examination) direction() *field.History {
-	d := field.NewHistory(e.Block(), e.Components())
-	unit(e.r, d.Data)
-	return d
-}
-
-func unit(r *rand.Rand, dst []float64) {
-	for i := range dst {
-		dst[i] = 2*r.Float64() - 1
-	}
-}
-
-// place names entry k of a history.
-func (e *examination) place(k int) string {
-	n, c, i := e.h.Place(k)
-	return fmt.Sprintf("component %d at %v", c, e.Block().At(n, i))
-}
-
-// judge holds the values given against the differences in q.
-func (e *examination) judge(kind string, given []float64, q quotient, of string) {
-	j := newJudge(e.s, q, given)
-	for k, v := range given {
-		if size, text := j.verdict(k, v); size > 0 {
-			e.found.add(kind, size, "%s, %s, %s of %s", kind, e.place(k), text, of)
-		}
-	}
 }

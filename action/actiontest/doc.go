@@ -16,6 +16,10 @@
 // derivatives of the action, the residual, the march and the energies against
 // one another.
 //
+// [Functional] holds value, gradient and second variation of any action of a whole
+// block against one another, at histories of one's own if wanted, and [Lagrangian]
+// the derivatives of a density L(φ, φ_t, φ_x; x, t).
+//
 // # How derivatives are judged
 //
 // A derivative is compared with central differences of what it derives from,

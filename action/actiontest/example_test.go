@@ -2,10 +2,12 @@ package actiontest_test
 
 import (
 	"fmt"
+	"log"
 	"math"
 
 	"github.com/tenter-go/tenter/action"
 	"github.com/tenter-go/tenter/action/actiontest"
+	"github.com/tenter-go/tenter/lattice"
 )
 
 // A slip in V″ is found and located.
@@ -32,5 +34,17 @@ func ExampleDensity() {
 		Source:    action.Over(func(x, t float64) float64 { return 0.3 * math.Sin(t) }),
 	}
 	fmt.Println(actiontest.Density(lossy, actiontest.Settings{}))
+	// Output: <nil>
+}
+
+// Any action of a whole block is tested in the same way, here that of a noisy
+// relaxation.
+func ExampleFunctional() {
+	block := lattice.Block{Time: lattice.Axis{Step: 0.1, Sites: 5}, Space: lattice.Axis{Step: 0.25, Sites: 9}}
+	flow, err := action.NewNoisyFlow(block, action.GradientFlow{Energy: action.Wave{Potential: action.Phi4{}}})
+	if err != nil {
+		log.Fatal(err)
+	}
+	fmt.Println(actiontest.Functional(flow, actiontest.Settings{}))
 	// Output: <nil>
 }

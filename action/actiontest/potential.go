@@ -13,7 +13,8 @@ import (
 //
 //   - Slope is the derivative of Value, and Curvature its second derivative, in
 //     every component, at random values of φ and the given positions and times;
-//     Curvature is symmetric; all are finite;
+//     Curvature is symmetric; all are finite; CurvatureAlong, if there is one, is
+//     the derivative of Curvature;
 //   - every method overwrites all of dst, writes nowhere else, and leaves φ and
 //     the positions alone;
 //   - a site does not depend on its neighbours, on the length of the slice or on
@@ -48,6 +49,7 @@ func Potential(p action.Potential, s Settings) error {
 		c.slopes(&found, s, given)
 		c.curvatures(&found, s, given)
 		c.symmetry(&found, given)
+		c.thirds(&found, s)
 		c.overwriting(&found, given)
 		c.memory(&found, s, given)
 		c.layouts(&found, given)

@@ -134,6 +134,7 @@ func TestPotentialFindsAndLocates(t *testing.T) {
 		{"accumulates", accumulating{1}, []string{"slope V′", "NaN", "dst"}, "curvature"},
 		{"overwrites in part", lazy{1}, []string{"slope V′ at φ = -", "NaN"}, "curvature"},
 		{"adds to what is there", addsToDst{}, []string{"dst held 1000", "want dst overwritten"}, "slope"},
+		{"inherits V‴", steeper{}, []string{"CurvatureAlong", "derivative of curvature V″ at φ = ", "inherits"}, "slope"},
 		{"nil", nil, []string{"potential is nil"}, "slope"},
 		{"no components", action.Sum{}, []string{"Components() is 0"}, "slope"},
 	} {
@@ -151,6 +152,27 @@ func TestPotentialFindsAndLocates(t *testing.T) {
 				t.Errorf("error says %q, which is right:\n%v", c.not, err)
 			}
 		})
+	}
+}
+
+// steeper is V = ½φ⁴ − ½φ², with V‴ of the φ⁴ that it embeds.
+type steeper struct{ action.Phi4 }
+
+func (steeper) Value(dst []float64, phi field.Slice, _ action.Sites) {
+	for i, p := range phi.Component(0) {
+		dst[i] = 0.5*p*p*p*p - 0.5*p*p
+	}
+}
+
+func (steeper) Slope(dst, phi field.Slice, _ action.Sites) {
+	for i, p := range phi.Component(0) {
+		dst.Component(0)[i] = 2*p*p*p - p
+	}
+}
+
+func (steeper) Curvature(dst, phi field.Slice, _ action.Sites) {
+	for i, p := range phi.Component(0) {
+		dst.Component(0)[i] = 6*p*p - 1
 	}
 }
 

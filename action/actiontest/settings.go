@@ -11,17 +11,17 @@ import (
 // Settings says where to test. The zero value works.
 type Settings struct {
 	// Low and High bound the values of φ, which are drawn evenly between them.
-	// Both zero means −3 to 3 for a potential and −1 to 1 for a density.
+	// Both zero means −3 to 3 for a potential and −1 to 1 for everything else.
 	Low, High float64
 
-	// X and T are the positions and times at which a potential is tested. Nil
-	// means four positions and two times about the origin. Not used by Density.
+	// X and T are the positions and times at which a potential or a Lagrangian is
+	// tested. Nil means four positions and two times about the origin.
 	X, T []float64
 
 	// Blocks are those a density is put on; one that it refuses is an error.
 	// Nil means small blocks with every kind of end, and rings, those left out
 	// that the density refuses (a prescribed flux, for instance, refuses rings).
-	// Not used by Potential.
+	// Used by Density alone.
 	Blocks []lattice.Block
 
 	// Step is the longest step of the difference quotients in φ. 0 means

@@ -12,14 +12,14 @@ import (
 const rounding = 1e-12
 
 // gradient holds ∂S/∂φ against differences of S, event by event.
-func (e *examination) gradient() {
-	given := e.Gradient(nil, e.h)
+func (e *trial) gradient() {
+	given := e.of.Gradient(nil, e.h)
 	moved := e.h.Clone()
 	all := quotient{}
 	for k, v := range e.h.Data {
 		q := slopeOf(1, e.s.Step, func(dst []float64, eps float64) {
 			moved.Data[k] = v + eps
-			dst[0] = e.Value(moved)
+			dst[0] = e.of.Value(moved)
 		})
 		moved.Data[k] = v
 		all.value = append(all.value, q.value[0])
@@ -31,21 +31,21 @@ func (e *examination) gradient() {
 
 // secondVariation holds S″η against differences of the gradient, and the matrix
 // against the product.
-func (e *examination) secondVariation() {
+func (e *trial) secondVariation() {
 	eta := e.direction()
-	product := e.SecondVariation(nil, e.h, eta)
-	q := e.along(eta, func(dst, h *field.History) { e.Gradient(dst, h) })
+	product := e.of.SecondVariation(nil, e.h, eta)
+	q := e.along(eta, func(dst, h *field.History) { e.of.Gradient(dst, h) })
 	e.judge("second variation", product.Data, q, "Gradient")
 
-	m := e.SecondVariationMatrix(nil, e.h)
+	m := e.of.SecondVariationMatrix(nil, e.h)
 	e.equal("second variation matrix × direction", e.times(m, eta), product.Data, "the product that SecondVariation gives")
 	e.symmetric(m)
 }
 
 // along measures the derivative of a history-valued function at h in the
 // direction eta.
-func (e *examination) along(eta *field.History, f func(dst, h *field.History)) quotient {
-	moved, out := e.h.Clone(), field.NewHistory(e.Block(), e.Components())
+func (e *trial) along(eta *field.History, f func(dst, h *field.History)) quotient {
+	moved, out := e.h.Clone(), field.NewHistory(e.of.Block(), e.of.Components())
 	return slopeOf(len(e.h.Data), e.s.Step, func(dst []float64, eps float64) {
 		for k, v := range e.h.Data {
 			moved.Data[k] = v + eps*eta.Data[k]
@@ -55,14 +55,14 @@ func (e *examination) along(eta *field.History, f func(dst, h *field.History)) q
 	})
 }
 
-func (e *examination) times(m *action.Matrix, x *field.History) []float64 {
+func (e *trial) times(m *action.Matrix, x *field.History) []float64 {
 	dst := make([]float64, len(x.Data))
 	m.MulVec(dst, x.Data)
 	return dst
 }
 
 // equal holds one list of values, an entry an event, against another.
-func (e *examination) equal(kind string, got, want []float64, of string) {
+func (e *trial) equal(kind string, got, want []float64, of string) {
 	var scale float64
 	for _, v := range want {
 		scale = max(scale, math.Abs(v))
@@ -74,7 +74,7 @@ func (e *examination) equal(kind string, got, want []float64, of string) {
 	}
 }
 
-func (e *examination) symmetric(m *action.Matrix) {
+func (e *trial) symmetric(m *action.Matrix) {
 	type entry struct{ r, c int }
 	at := map[entry]float64{}
 	var scale float64

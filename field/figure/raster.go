@@ -15,14 +15,22 @@ func raster(h *field.History, c, cols, rows int, s *shade) *image.RGBA {
 	sites, slices := h.Block.Sites(), h.Block.Slices()
 	cols, rows = fitting(sites, cols), fitting(slices, rows)
 	img := image.NewRGBA(image.Rect(0, 0, cols, rows))
+	paint(img, img.Rect, h, c, s)
+	return img
+}
+
+// paint fills the rectangle r of img with component c of h, whatever the number of
+// its pixels: those of one event may be more by one than those of the next.
+func paint(img *image.RGBA, r image.Rectangle, h *field.History, c int, s *shade) {
+	sites, slices, cols, rows := h.Block.Sites(), h.Block.Slices(), r.Dx(), r.Dy()
 	sums := make([]float64, cols)
 	edges := make([][2]int, cols)
 	for p := range edges {
 		edges[p][0], edges[p][1] = covered(p, cols, sites)
 	}
-	for r := range rows {
+	for q := range rows {
 		clear(sums)
-		n0, n1 := covered(r, rows, slices)
+		n0, n1 := covered(q, rows, slices)
 		for n := n0; n < n1; n++ {
 			row := h.Slice(n).Component(c)
 			for p, e := range edges {
@@ -33,13 +41,12 @@ func raster(h *field.History, c, cols, rows int, s *shade) *image.RGBA {
 				sums[p] = sum
 			}
 		}
-		y := rows - 1 - r
+		y := r.Max.Y - 1 - q
 		for p, sum := range sums {
 			e := edges[p]
-			img.SetRGBA(p, y, s.of(sum/float64((n1-n0)*(e[1]-e[0]))))
+			img.SetRGBA(r.Min.X+p, y, s.of(sum/float64((n1-n0)*(e[1]-e[0]))))
 		}
 	}
-	return img
 }
 
 // fitting returns how many pixels to use for a number of events: the given number

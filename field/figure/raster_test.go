@@ -35,7 +35,7 @@ func TestCovered(t *testing.T) {
 
 func TestRasterMean(t *testing.T) {
 	h := ramp(4, 6) // value 6n + i
-	s, err := newShade(0, 23, false)
+	s, err := newShade(0, 23, false, smooth)
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -16,15 +16,20 @@ var notFinite = color.RGBA{0x00, 0x9E, 0x73, 0xFF}
 // the last, values beyond them likewise.
 type shade struct {
 	low, high float64
-	table     [1024]color.RGBA
+	table     []color.RGBA
 }
 
-func newShade(low, high float64, diverging bool) (*shade, error) {
+// smooth is a number of levels that no eye tells apart.
+const smooth = 1024
+
+// newShade returns the colours from low to high in a number of levels, at least
+// two.
+func newShade(low, high float64, diverging bool, levels int) (*shade, error) {
 	var m palette.ColorMap = moreland.ExtendedBlackBody()
 	if diverging {
 		m = moreland.SmoothBlueRed()
 	}
-	s := &shade{low: low, high: high}
+	s := &shade{low, high, make([]color.RGBA, levels)}
 	m.SetMin(0)
 	m.SetMax(float64(len(s.table) - 1))
 	for i := range s.table {

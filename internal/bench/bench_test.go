@@ -7,6 +7,7 @@ import (
 	"github.com/tenter-go/tenter/action"
 	"github.com/tenter-go/tenter/field"
 	"github.com/tenter-go/tenter/lattice"
+	"gonum.org/v1/gonum/mat"
 )
 
 func TestMedian(t *testing.T) {
@@ -56,5 +57,26 @@ func TestPeersAgree(t *testing.T) {
 		if want := h.At(steps+1, 0, sites/3); math.Abs(phi-want) > 1e-12 {
 			t.Errorf("%T: peer ends at %v, the library at %v", c.potential, phi, want)
 		}
+	}
+}
+
+// The thirteen-point matrix must be the square of the five-point one.
+func TestGridMatrix(t *testing.T) {
+	const n = 5
+	dense := func(points int) *mat.SymDense {
+		p, values := gridMatrix(n, points)
+		m := mat.NewSymDense(p.N, nil)
+		for i := range p.N {
+			for k := p.Ptr[i]; k < p.Ptr[i+1]; k++ {
+				m.SetSym(i, int(p.Adj[k]), values[k])
+			}
+		}
+		return m
+	}
+	var square mat.Dense
+	five := dense(5)
+	square.Mul(five, five)
+	if !mat.EqualApprox(&square, dense(13), 1e-12) { // sums of five products below 20
+		t.Errorf("thirteen-point matrix is not the square:\n%v", mat.Formatted(dense(13)))
 	}
 }

@@ -20,6 +20,7 @@ var sets = map[string]struct {
 	cases func(dir string) []bench
 }{
 	"evolve": {"ns per site and step", evolveCases},
+	"block":  {"seconds", blockCases},
 }
 
 func main() {
