@@ -40,6 +40,15 @@ func (c *cholesky) Solve(dst, b []float64) { c.factor.Solve(dst, b) }
 
 // factoriser returns the factoriser of a pattern, or a *TooLarge.
 func (p *problem) factoriser(pattern *nested.Pattern, suggestion string) (factoriser, error) {
+	symbolic, err := p.symbolic(pattern, suggestion)
+	if err != nil {
+		return nil, err
+	}
+	return &cholesky{symbolic: symbolic}, nil
+}
+
+// symbolic returns the analysis of a pattern, or a *TooLarge.
+func (p *problem) symbolic(pattern *nested.Pattern, suggestion string) (*nested.Symbolic, error) {
 	symbolic, err := nested.Analyse(*pattern)
 	if err != nil {
 		return nil, fmt.Errorf("minimize: %w", err)
@@ -52,7 +61,7 @@ func (p *problem) factoriser(pattern *nested.Pattern, suggestion string) (factor
 		}
 	}
 	p.rep.Front = size.LargestFront
-	return &cholesky{symbolic: symbolic}, nil
+	return symbolic, nil
 }
 
 // singular says where a factorisation failed.
