@@ -28,7 +28,7 @@ type Inertia struct {
 	Smallest float64
 	At       lattice.Event
 
-	// Negative are the lowest eigenvalues known, the lowest first. Saddle only.
+	// Negative are the negative eigenvalues found, the lowest first. Saddle only.
 	Negative []float64
 
 	// ZeroModesHeld is the number of zero modes held, Force the largest part of
@@ -78,13 +78,19 @@ func (s *stationary) count() error {
 	b := s.bordered
 	i := &Inertia{ZeroModesHeld: s.modes, Force: s.force(), Zero: vanishing * b.norm}
 	s.rep.Inertia = i
-	low := b.nearest(lanczosSteps, 1)[0]
+	low := b.nearest(lanczosSteps).smallest()
 	image := make([]float64, len(low.vector))
 	b.mul(image, low.vector)
+	n, zero := b.negative()
+	if zero > 0 { // a null vector of the matrix with replaced pivots is not quite one of A
+		b.solve(image, image)
+		floats.Sub(low.vector, image)
+		floats.Scale(1/floats.Norm(low.vector, 2), low.vector)
+		b.mul(image, low.vector)
+	}
 	// the length of the image does not cancel as the eigenvalue does
 	i.Smallest = math.Copysign(floats.Norm(image, 2), low.value)
 	i.At = s.where(low.vector)
-	n, zero := b.negative()
 	i.Index, i.Nullity, i.Known = n, zero, zero == 0
 	if zero > 0 || math.Abs(i.Smallest) <= i.Zero {
 		var err error

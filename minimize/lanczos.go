@@ -1,7 +1,6 @@
 package minimize
 
 import (
-	"cmp"
 	"math"
 	"math/rand/v2"
 	"slices"
@@ -17,12 +16,20 @@ type eigenpair struct {
 	vector []float64
 }
 
-// nearest returns the eigenpairs nearest to zero that so many steps of the
-// Lanczos method for A⁻¹ find, with full reorthogonalisation, by growing
-// |eigenvalue|: at most most of them, only the first of which is returned
-// whatever its accuracy, the others to 1 %. Of equal eigenvalues it sees one.
-// [Ericsson & Ruhe 1980, Math. Comp. 35, 1251]
-func (b *bordered) nearest(steps, most int) []eigenpair {
+// A lanczos is what so many steps of the Lanczos method for A⁻¹ on the
+// constrained space have found. It sees the eigenvalues of A nearest to zero on
+// either side first, and of equal ones only one. [Ericsson & Ruhe 1980, Math.
+// Comp. 35, 1251]
+type lanczos struct {
+	b       *bordered
+	basis   [][]float64
+	theta   []float64 // eigenvalues of the tridiagonal matrix, rising: 1/λ
+	weights mat.Dense
+	off     []float64 // error bounds of theta
+}
+
+// nearest runs the method, with full reorthogonalisation.
+func (b *bordered) nearest(steps int) *lanczos {
 	n := len(b.root)
 	v := scattered(n, 1)
 	b.project(v)
@@ -60,30 +67,46 @@ func (b *bordered) nearest(steps, most int) []eigenpair {
 	if !eig.Factorize(t, true) {
 		panic("minimize: eigenvalues of a tridiagonal matrix did not converge")
 	}
-	theta := eig.Values(nil)
-	var weights mat.Dense
-	eig.VectorsTo(&weights)
-	order := make([]int, m)
-	for i := range order {
-		order[i] = i
+	l := &lanczos{b: b, basis: basis, theta: eig.Values(nil), off: make([]float64, m)}
+	eig.VectorsTo(&l.weights)
+	for i := range m {
+		l.off[i] = beside[m-1] * math.Abs(l.weights.At(m-1, i))
 	}
-	slices.SortFunc(order, func(i, j int) int { return cmp.Compare(math.Abs(theta[j]), math.Abs(theta[i])) })
+	return l
+}
+
+// pair returns the i-th eigenpair, its value by Rayleigh's quotient.
+func (l *lanczos) pair(i int) eigenpair {
+	x, image := make([]float64, len(l.b.root)), make([]float64, len(l.b.root))
+	for k, u := range l.basis {
+		floats.AddScaled(x, l.weights.At(k, i), u)
+	}
+	floats.Scale(1/floats.Norm(x, 2), x)
+	l.b.mul(image, x)
+	return eigenpair{floats.Dot(image, x), x}
+}
+
+// smallest returns the pair of least |λ|.
+func (l *lanczos) smallest() eigenpair {
+	if last := len(l.theta) - 1; math.Abs(l.theta[last]) > math.Abs(l.theta[0]) {
+		return l.pair(last)
+	}
+	return l.pair(0)
+}
+
+// positive returns the pair of least positive λ. There must be one.
+func (l *lanczos) positive() eigenpair { return l.pair(len(l.theta) - 1) }
+
+// negative returns the pairs of negative λ that are good to 1 %, at most most of
+// them, the lowest first.
+func (l *lanczos) negative(most int) []eigenpair {
 	var pairs []eigenpair
-	for rank, i := range order {
-		if len(pairs) == most {
-			break
+	for i, v := range l.theta {
+		if v < 0 && l.off[i] < 0.01*-v && len(pairs) < most {
+			pairs = append(pairs, l.pair(i))
 		}
-		if off := beside[m-1] * math.Abs(weights.At(m-1, i)); rank > 0 && off > 0.01*math.Abs(theta[i]) {
-			continue
-		}
-		x := make([]float64, n)
-		for k, u := range basis {
-			floats.AddScaled(x, weights.At(k, i), u)
-		}
-		floats.Scale(1/floats.Norm(x, 2), x)
-		b.mul(v, x)
-		pairs = append(pairs, eigenpair{floats.Dot(v, x), x})
 	}
+	slices.Reverse(pairs)
 	return pairs
 }
 

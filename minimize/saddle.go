@@ -4,7 +4,6 @@ import (
 	"context"
 	"fmt"
 	"math"
-	"slices"
 
 	"github.com/tenter-go/tenter/action"
 	"github.com/tenter-go/tenter/constraint"
@@ -53,7 +52,7 @@ type saddle struct {
 	radius float64     // of steps, in the metric
 }
 
-// followed is the number of eigenvectors whose sign may be wrong, with the lowest.
+// followed is the largest index for which eigenvectors are followed one by one.
 const followed = 12
 
 func (s *saddle) solve(ctx context.Context) (*Found, error) {
@@ -73,7 +72,9 @@ func (s *saddle) solve(ctx context.Context) (*Found, error) {
 				return s.finish(Stalled, err.Error(), err)
 			}
 		}
-		s.follow(y)
+		if err := s.follow(y); err != nil {
+			return s.finish(Stalled, err.Error(), err)
+		}
 		length := floats.Norm(y, 2)
 		if s.radius == 0 {
 			s.radius = length
@@ -121,33 +122,53 @@ func (s *saddle) look() error {
 		return nil
 	}
 	if s.index > followed {
-		return fmt.Errorf("minimize: second variation of index %d on the way; want a start nearer to a saddle", s.index)
+		return s.shift()
 	}
-	s.low = s.lowest()
+	if l := s.bordered.nearest(3 * lanczosSteps); s.index == 0 {
+		s.low = []eigenpair{l.positive()}
+	} else {
+		s.low = l.negative(followed)
+	}
 	return nil
 }
 
-// lowest returns the eigenpairs nearest to zero, the lowest first.
-func (s *saddle) lowest() []eigenpair {
-	low := s.bordered.nearest(3*lanczosSteps, 2*followed)
-	slices.SortFunc(low, func(a, b eigenpair) int {
-		if a.value < b.value {
-			return -1
+// shift factorises A + μ with μ so large that only the lowest eigenvalue stays
+// negative, by bisection. The step −(A + μ)⁻¹r is uphill along its vector and
+// downhill along all others as well, and shorter.
+func (s *saddle) shift() error {
+	low, high := 0.0, s.bordered.norm
+	const halvings = 60
+	for range halvings {
+		mu := 0.5 * (low + high)
+		s.rep.Factorisations++
+		if err := s.bordered.factorise(mu); err != nil {
+			return err
 		}
-		return 1
-	})
-	return low
+		n, zero := s.bordered.negative()
+		switch {
+		case n == 1 && zero == 0:
+			return nil
+		case n == 0:
+			high = mu
+		default:
+			low = mu
+		}
+	}
+	return fmt.Errorf("minimize: second variation of index %d on the way, its lowest two eigenvalues equal; want a start without that symmetry, or nearer to a saddle", s.index)
 }
 
 // follow writes the step to y: uphill along the lowest eigenvector, downhill along
 // all others.
-func (s *saddle) follow(y []float64) {
-	s.newtonStep(y)
+func (s *saddle) follow(y []float64) error {
+	if err := s.newtonStep(y); err != nil {
+		return err
+	}
 	for k, e := range s.low {
 		if k == 0 && e.value > 0 || k > 0 && e.value < 0 {
 			floats.AddScaled(y, -2*floats.Dot(y, e.vector), e.vector)
 		}
 	}
+	return nil
 }
 
 // verify polishes, counts, and says whether it is a saddle of index 1.
@@ -155,17 +176,14 @@ func (s *saddle) verify(ctx context.Context) (*Found, error) {
 	if err := s.polish(ctx); err != nil {
 		return s.finish(Stalled, err.Error(), err)
 	}
-	var negative []float64
-	for _, e := range s.lowest() {
-		if e.value < 0 {
-			negative = append(negative, e.value)
-		}
-	}
+	low := s.bordered.nearest(3 * lanczosSteps).negative(followed)
 	if err := s.count(); err != nil {
 		return s.finish(Stalled, err.Error(), err)
 	}
 	i := s.rep.Inertia
-	i.Negative = negative
+	for _, e := range low {
+		i.Negative = append(i.Negative, e.value)
+	}
 	if i.Index != 1 || i.Nullity > 0 || !i.Known {
 		return s.finish(Singular, fmt.Sprintf("gradient vanishes, but the second variation has index %d and nullity %d, smallest |eigenvalue| %.2g at %v; want a start nearer to a saddle, or zero modes held", i.Index, i.Nullity, math.Abs(i.Smallest), i.At), nil)
 	}

@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 
 	"github.com/tenter-go/tenter/constraint"
 	"github.com/tenter-go/tenter/field"
@@ -51,7 +52,7 @@ type stationary struct {
 	bordered  *bordered
 	modes     int         // zero modes held, the last rows of the border
 	r, trialR []float64   // gradient in the metric, on the constrained space
-	null      [][]float64 // null vectors of the second variation at h
+	null      [][]float64 // null vectors of A at h, once they are asked for
 	bare      bool        // no second variation of h is factorised
 }
 
@@ -118,8 +119,7 @@ func (s *stationary) accept(value float64) {
 	s.bare = true
 }
 
-// linearise factorises the second variation at h, which measure has evaluated,
-// and finds its null vectors.
+// linearise factorises the second variation at h, which measure has evaluated.
 func (s *stationary) linearise() error {
 	if !s.bare {
 		return nil
@@ -130,23 +130,36 @@ func (s *stationary) linearise() error {
 		return err
 	}
 	s.null, s.bare = nil, false
-	if _, zero := s.bordered.negative(); zero > 0 {
-		if size := 16 * float64(zero) * float64(s.free.N); size > s.set.Memory {
-			return fmt.Errorf("minimize: %d null vectors of %d unknowns need %.2g bytes, above the limit of %.2g in the settings", zero, s.free.N, size, s.set.Memory)
-		}
-		s.null = s.bordered.nullSpace(zero)
-	}
 	return nil
 }
 
+// nullVectors returns the null vectors of the second variation that is
+// factorised, none if it has none.
+func (s *stationary) nullVectors() ([][]float64, error) {
+	_, zero := s.bordered.negative()
+	if zero == 0 || s.null != nil {
+		return s.null, nil
+	}
+	if size := 16 * float64(zero) * float64(s.free.N); size > s.set.Memory {
+		return nil, fmt.Errorf("minimize: %d null vectors of %d unknowns need %.2g bytes, above the limit of %.2g in the settings", zero, s.free.N, size, s.set.Memory)
+	}
+	s.null = s.bordered.nullSpace(zero)
+	return s.null, nil
+}
+
 // newtonStep writes the step to dst, the shortest there is if A is singular.
-func (s *stationary) newtonStep(dst []float64) {
-	if s.null == nil {
+func (s *stationary) newtonStep(dst []float64) error {
+	null, err := s.nullVectors()
+	if err != nil {
+		return err
+	}
+	if null == nil {
 		s.bordered.solve(dst, s.r)
 	} else {
-		s.bordered.solveWithin(dst, s.r, s.null)
+		s.bordered.solveWithin(dst, s.r, null)
 	}
 	floats.Scale(-1, dst)
+	return nil
 }
 
 // contradicted reports whether all that is left of the gradient lies along the
@@ -155,7 +168,7 @@ func (s *stationary) contradicted() bool {
 	if s.null == nil {
 		return false
 	}
-	rest := append([]float64(nil), s.r...)
+	rest := slices.Clone(s.r)
 	along := outside(rest, s.null)
 	return floats.Norm(rest, 2) <= 1e-6*along
 }
@@ -176,10 +189,12 @@ func (s *stationary) solve(ctx context.Context) (*Found, error) {
 			if err := s.linearise(); err != nil {
 				return s.finish(Stalled, err.Error(), err)
 			}
+			if err := s.newtonStep(d.newton); err != nil {
+				return s.finish(Stalled, err.Error(), err)
+			}
 			if s.contradicted() {
 				return s.contradiction()
 			}
-			s.newtonStep(d.newton)
 			d.aim(s.bordered, s.r)
 		}
 		length := d.choose()
@@ -260,7 +275,9 @@ func (s *stationary) polish(ctx context.Context) error {
 		if ctx.Err() != nil || s.rep.After.Max == 0 {
 			break
 		}
-		s.newtonStep(y)
+		if err := s.newtonStep(y); err != nil {
+			return err
+		}
 		value, _ := s.evaluate(y)
 		var after float64
 		for _, g := range s.trialGrad {
