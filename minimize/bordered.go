@@ -49,6 +49,9 @@ func newBordered(p *problem, hess *hessian, rows []linearRow) (*bordered, error)
 	for u, w := range b.root {
 		b.root[u] = math.Sqrt(w)
 	}
+	if len(rows) >= n {
+		return nil, &Refusal{Problem: p.rep.Problem, Why: fmt.Sprintf("%d linear conditions on %d unknowns leave nothing free; leave some out", len(rows), n)}
+	}
 	for _, r := range rows {
 		c := linearRow{name: r.name, unknown: r.unknown, coef: make([]float64, len(r.coef)), rhs: r.rhs}
 		var square float64

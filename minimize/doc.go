@@ -48,9 +48,9 @@
 // floor(ω_kT/π) for a massive field pinned at both times. Relative to a reference
 // history it is a small number. It settles if the frequencies of high modes keep away
 // from the multiples of π/T, as with dt = dx and a rational ratio of T to the
-// length. In general it goes on changing by a few, like (T·δm²/2π)·log(1/h) for a
-// change δm² of the mean curvature of V on a unit of length, as ever higher modes
-// cross.
+// length. In general it goes on changing, ever more rarely, as higher modes cross:
+// by about (A·δm²/2π²)·log(1/h) for a change δm² of the mean of V″ on a block of area
+// A. Compare it on the same lattice only.
 //
 // # Conditions
 //

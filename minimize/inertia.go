@@ -59,14 +59,16 @@ func (i *Inertia) String() string {
 	if i.ZeroModesHeld > 0 {
 		fmt.Fprintf(&s, ", %d zero modes held (force %.2g)", i.ZeroModesHeld, i.Force)
 	}
+	if len(i.Negative) > 0 {
+		fmt.Fprintf(&s, ", lowest λ %.4g", i.Negative[0])
+	}
 	fmt.Fprintf(&s, ", smallest |λ| %.4g at %v", math.Abs(i.Smallest), i.At)
 	return s.String()
 }
 
 // vanishing, times the norm of the second variation, is the size up to which
-// an eigenvalue counts as zero: above what rounding and the replaced pivots of
-// a singular factor leave (4e-11·norm shrinks on the null vectors), below any
-// that a solve can be trusted with.
+// an eigenvalue counts as zero: above rounding, 1e-16 times some growth, and below
+// any with which a solve keeps five digits.
 const vanishing = 1e-11
 
 // lanczosSteps finds the eigenvalue of least modulus to two digits unless the

@@ -31,25 +31,28 @@ type lanczos struct {
 // nearest runs the method, with full reorthogonalisation.
 func (b *bordered) nearest(steps int) *lanczos {
 	n := len(b.root)
+	steps = min(steps, n-len(b.rows))
 	v := scattered(n, 1)
 	b.project(v)
 	floats.Scale(1/floats.Norm(v, 2), v)
 	basis := [][]float64{v}
 	var diagonal, beside []float64
+	var size float64 // of A⁻¹, as far as it is known
 	for {
 		k := len(basis) - 1
 		w := make([]float64, n)
 		b.solve(w, basis[k])
-		before := floats.Norm(w, 2)
+		size = max(size, floats.Norm(w, 2))
 		diagonal = append(diagonal, floats.Dot(w, basis[k]))
 		for range 2 { // once leaves errors of the size of rounding times |A⁻¹|
+			b.project(w)
 			for _, u := range basis {
 				floats.AddScaled(w, -floats.Dot(w, u), u)
 			}
 		}
 		length := floats.Norm(w, 2)
 		beside = append(beside, length)
-		if len(basis) == min(steps, n) || length <= 1e-13*before { // the space is invariant
+		if len(basis) >= steps || length <= 1e-13*size { // the space is invariant
 			break
 		}
 		floats.Scale(1/length, w)

@@ -66,12 +66,14 @@ type Settings struct {
 	Work   float64
 
 	// ZeroModes are directions in which Stationary and Saddle do not go: the
-	// outcome differs from the start by nothing that overlaps with any of them,
-	// ∫ a (φ − φ_start) dx dt = 0. Values at fixed events do not matter.
+	// outcome differs from the start, adjusted to the conditions, by nothing that
+	// overlaps with any of them, ∫ a (φ − φ_start) dx dt = 0. Their values at fixed
+	// events do not matter.
 	ZeroModes []*field.History
 
 	// Shifts holds translations in the same way, their directions being the
-	// slopes of the start history along an axis. Stationary and Saddle only.
+	// slopes, along an axis, of the start history adjusted to the conditions.
+	// Stationary and Saddle only.
 	Shifts Shift
 
 	// MinimumNorm accepts a stationary point with a singular second variation:
