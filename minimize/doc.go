@@ -24,6 +24,34 @@
 // ∂S/∂φ = 0 of the free events lack that of slice 1 and have a natural condition
 // at the last slice instead.
 //
+// # Stationary histories and saddles
+//
+// [Stationary] solves the same equations for either signature, without asking
+// for a minimum, and [Saddle] looks for a point of index 1 of a Euclidean action: a
+// bounce, a sphaleron, a critical droplet. Both factorise the second variation as
+// LDLᵀ and report an [Inertia]: the Morse index, the nullity, and the eigenvalue
+// nearest to zero with the event where its vector is largest. Eigenvalues are
+// those of S″v = λWv with the areas W of the events, so that they converge.
+//
+// A two-time problem is singular if a normal mode fits the time between the
+// slices, and nearly so if one almost does, which on fine lattices one always does.
+// Singular blocks are told, and the history nearest to the start can be asked for.
+//
+// A translation that nothing hinders is a zero mode. The lattice makes it a tiny
+// eigenvalue whose sign depends on where the centre lies between the sites, so that
+// a bounce reads as index 1, 2 or 3. Settings.Shifts and Settings.ZeroModes hold such
+// directions by bordering the matrix; m of them add m negative eigenvalues, which
+// are taken off. A quarter of the plane with free sides along the axes of symmetry
+// has no zero modes and needs none held.
+//
+// The index of a Lorentzian block grows with every refinement, being Σ_k
+// floor(ω_kT/π) for a massive field pinned at both times. Relative to a reference
+// history it is a small number. It settles if the frequencies of high modes keep away
+// from the multiples of π/T, as with dt = dx and a rational ratio of T to the
+// length. In general it goes on changing, ever more rarely, as higher modes cross:
+// by about (A·δm²/2π²)·log(1/h) for a change δm² of the mean of V″ on a block of area
+// A. Compare it on the same lattice only.
+//
 // # Conditions
 //
 // Conditions come from package constraint. Pins and ties are eliminated. Hard
@@ -41,7 +69,7 @@
 //
 // # Outcome
 //
-// Both return a [Found] with the history, the reactions and a [Report]. Unless
+// All return a [Found] with the history, the reactions and a [Report]. Unless
 // the status is Converged the error is a [*NotConverged], and the history is the
 // best one so far; a context that ends is one of the reasons. Problems that
 // cannot be asked are a [*Refusal], those above the limits of the settings a
