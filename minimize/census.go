@@ -38,7 +38,8 @@ type CensusSettings struct {
 	Most float64
 
 	// Of, if not nil, gives action and index of each history under the conditions
-	// Held. Otherwise the action is Report.CostAfter and the index is unknown.
+	// Held. Otherwise the action is Report.CostAfter, and the index is that of
+	// Report.Inertia if Solve has counted it.
 	Of   Functional
 	Held *constraint.Set
 
@@ -135,9 +136,12 @@ func TakeCensus(ctx context.Context, solve Solve, starts iter.Seq[*field.History
 	t := &teller{set: c, census: new(Census)}
 	t.collect(ctx, solve, starts)
 	slices.SortStableFunc(t.census.Residents, func(a, b Resident) int { return cmp.Compare(a.Action, b.Action) })
-	if c.Of != nil {
-		for k := range t.census.Residents {
-			r := &t.census.Residents[k]
+	for k := range t.census.Residents {
+		r := &t.census.Residents[k]
+		if i := r.Found.Report.Inertia; i != nil {
+			r.Index, r.Known = i.Index, i.Known
+		}
+		if c.Of != nil {
 			var err error
 			if r.Index, r.Known, err = index(c.Of, c.Held, r.Found.History); err != nil {
 				return t.census, err

@@ -132,6 +132,19 @@ func TestCensusOfAllenCahn(t *testing.T) {
 			t.Errorf("h = %g, up to a sign: %v, %v", h, c, err)
 		}
 	}
+	// Newton's method counts the index itself and finds them from the same starts.
+	s := allenCahn(t, long, 0.2)
+	c, err := TakeCensus(context.Background(), func(ctx context.Context, start *field.History) (*Found, error) {
+		return Stationary(ctx, s, nil, start, &Settings{Tolerance: 1e-10})
+	}, waves(s.Block(), 2), &CensusSettings{Distance: 1e-3})
+	if err != nil || len(c.Residents) != 7 {
+		t.Fatalf("%v: %v", err, c)
+	}
+	for k, r := range c.Residents {
+		if n := []int{0, 0, 1, 1, 2, 2, 3}[k]; r.Index != n || !r.Known {
+			t.Errorf("by Newton's method: %v; want the index %d", r, n)
+		}
+	}
 	for n, e := range errs {
 		if order := math.Log2(e[1] / e[2]); !(math.Abs(order-2) < 0.05) { // h⁴ beside h² at h = 0.2
 			t.Errorf("energy of %d half waves: errors %.4g, order %.3f; want 2", n, e, order)

@@ -341,3 +341,42 @@ func TestLeastResidualRefusesBounds(t *testing.T) {
 		t.Errorf("bounds: %v, want a *Refusal", err)
 	}
 }
+
+// A minimum under a hard linear condition is a stationary history of index 0
+// under it, with the same reaction.
+func TestStationaryUnderALinearCondition(t *testing.T) {
+	b := lattice.Block{Time: lattice.Axis{Step: 0.5, Sites: 5}, Space: lattice.Axis{Step: 0.4, Sites: 7}}
+	s, err := action.New(b, action.Wave{Potential: action.Phi4{}, Signature: action.Euclidean})
+	if err != nil {
+		t.Fatal(err)
+	}
+	held := constraint.On(b)
+	held.Mean(2, 0.6)
+	held.Event(0, 0, -1)
+	start := field.NewHistory(b, 1)
+	for i := range start.Data {
+		start.Data[i] = 0.9
+	}
+	low, err := Minimum(context.Background(), s, held, start, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	still, err := Stationary(context.Background(), s, held, low.History, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if d := still.History.MaxDifference(low.History); d > 1e-9 { // the tolerance of both
+		t.Errorf("%g away from the minimum", d)
+	}
+	if i := still.Report.Inertia; !i.Known || i.Index != 0 {
+		t.Errorf("inertia %+v, want index 0", i)
+	}
+	for k, r := range low.Reactions {
+		if q := still.Reactions[k]; q.Kind != r.Kind || math.Abs(q.Push-r.Push) > 1e-8 || r.Push == 0 {
+			t.Errorf("reaction %v, of the minimum %v", q, r)
+		}
+	}
+	if len(low.Reactions) != 2 {
+		t.Errorf("%d reactions, want 2", len(low.Reactions))
+	}
+}

@@ -65,7 +65,7 @@ func newContinuation(family Family, p float64, start *field.History, set *Contin
 	c.first.second = c.first.f.SecondVariationMatrix(nil, c.first.h)
 	c.hess = newHessian(c.first.second, c.first.free, c.first.grid())
 	c.grid = c.hess.pattern
-	if _, err := c.first.factoriser(c.grid, "want a smaller block or higher limits in the settings"); err != nil {
+	if _, err := c.first.symbolic(c.grid, "want a smaller block or higher limits in the settings"); err != nil {
 		return nil, err
 	}
 	c.border, err = newEdged(c.grid, 1)

@@ -36,15 +36,9 @@ type descent interface {
 // actionDescent runs down an action.
 type actionDescent struct{ *minimum }
 
-func newActionDescent(p *problem) (*actionDescent, error) {
-	d := &actionDescent{&minimum{problem: p}}
-	p.rep.Push = "−∂S/∂φ at the event, the impulse that holds the pin"
-	p.rep.Rows = p.free.N
-	if err := d.begin(); err != nil {
-		return nil, err
-	}
-	d.minimum.hess = newHessian(d.minimum.second, p.free, p.grid())
-	return d, nil
+func newActionDescent(m *minimum) *actionDescent {
+	m.hess = newHessian(m.second, m.free, m.grid())
+	return &actionDescent{m}
 }
 
 func (d *actionDescent) base() *problem      { return d.problem }

@@ -24,6 +24,34 @@
 // ∂S/∂φ = 0 of the free events lack that of slice 1 and have a natural condition
 // at the last slice instead.
 //
+// # Stationary histories and saddles
+//
+// [Stationary] solves the same equations for either signature, without asking
+// for a minimum, and [Saddle] looks for a point of index 1 of a Euclidean action: a
+// bounce, a sphaleron, a critical droplet. Both factorise the second variation as
+// LDLᵀ and report an [Inertia]: the Morse index, the nullity, and the eigenvalue
+// nearest to zero with the event where its vector is largest. Eigenvalues are
+// those of S″v = λWv with the areas W of the events, so that they converge.
+//
+// A two-time problem is singular if a normal mode fits the time between the
+// slices, and nearly so if one almost does, which on fine lattices one always does.
+// Singular blocks are told, and the history nearest to the start can be asked for.
+//
+// A translation that nothing hinders is a zero mode. The lattice makes it a tiny
+// eigenvalue whose sign depends on where the centre lies between the sites, so that
+// a bounce reads as index 1, 2 or 3. Settings.Shifts and Settings.ZeroModes hold such
+// directions by bordering the matrix; m of them add m negative eigenvalues, which
+// are taken off. A quarter of the plane with free sides along the axes of symmetry
+// has no zero modes and needs none held.
+//
+// The index of a Lorentzian block grows with every refinement, being Σ_k
+// floor(ω_kT/π) for a massive field pinned at both times. Relative to a reference
+// history it is a small number. It settles if the frequencies of high modes keep away
+// from the multiples of π/T, as with dt = dx and a rational ratio of T to the
+// length. In general it goes on changing, ever more rarely, as higher modes cross:
+// by about (A·δm²/2π²)·log(1/h) for a change δm² of the mean of V″ on a block of area
+// A. Compare it on the same lattice only.
+//
 // # Ways downhill
 //
 // [Relax] and [RelaxResidual] let a history flow in a relaxation time τ beside the
@@ -61,7 +89,8 @@
 // with their precision. Observations and cost conditions add to the action or to
 // the cost, and a solve settles their compromise with it: for a Gaussian problem
 // that is the posterior mean of Gauss and Markov. Bounds are kept by an active
-// set, in Minimum only. Ends of kind Held and Odd, which have no equation, stay at
+// set, in Minimum and Relax only; Continue takes neither bounds nor linear
+// conditions. Ends of kind Held and Odd, which have no equation, stay at
 // the values of the start history unless the conditions pin them.
 //
 // Each hard condition has a reaction: −∂S/∂φ for a minimum, the impulse of the
@@ -71,13 +100,13 @@
 //
 // # Outcome
 //
-// Minimum and LeastResidual return a [Found] with the history, the reactions and a
-// [Report], and so do the others in an outcome of their own. Unless the status is
-// Converged the error is a [*NotConverged], for a branch a [*BrokenBranch], and the
-// history is the best one so far; a context that ends is one of the reasons.
-// Problems that cannot be asked are a [*Refusal], those above the limits of the
-// settings a [*TooLarge], explicit steps above theirs an [*Unstable]. There is no
-// silent fall-back: the report names the method.
+// Solvers return a [Found] with the history, the reactions and a [Report], flows
+// and families in an outcome of their own. Unless the status is Converged the error
+// is a [*NotConverged], for a branch a [*BrokenBranch], and the history is the best
+// one so far; a context that ends is one of the reasons. Problems that cannot be
+// asked are a [*Refusal], those above the limits of the settings a [*TooLarge],
+// explicit steps above theirs an [*Unstable]. There is no silent fall-back: the
+// report names the method.
 //
 // # Size and time
 //

@@ -21,9 +21,10 @@ type equations struct {
 
 // newEquations checks a problem called name and refuses what has no action.
 func newEquations(name string, f Functional, held *constraint.Set, start *field.History, set *Settings) (*equations, error) {
-	f = given(f)
-	if err := refuseLosses(name, f); err != nil {
-		return nil, err
+	if f = given(f); f != nil {
+		if err := conservative(name, f); err != nil {
+			return nil, err
+		}
 	}
 	p, err := newProblem(name, f, held, start, set)
 	if err != nil {
@@ -37,22 +38,6 @@ func newEquations(name string, f Functional, held *constraint.Set, start *field.
 		q.leads = append(q.leads, int32(p.free.Lead(k)))
 	}
 	return q, nil
-}
-
-// refuseLosses returns a *Refusal unless f, if there is one, has an action.
-func refuseLosses(name string, f Functional) error {
-	if f == nil {
-		return nil
-	}
-	err := f.Conservative()
-	if err == nil {
-		return nil
-	}
-	why := err.Error()
-	if part := (*action.NoActionError)(nil); errors.As(err, &part) {
-		why = part.Part + " does not come from an action; ask for the least residual"
-	}
-	return &Refusal{Problem: name, Why: why, Cause: err}
 }
 
 // refuseLorentzian returns a *Refusal if f is known to be Lorentzian.

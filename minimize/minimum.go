@@ -37,32 +37,27 @@ import (
 // kink, is wanted. The push of a reaction is −∂S/∂φ(E), the impulse that a source
 // at E would need to hold the field there.
 func Minimum(ctx context.Context, f Functional, held *constraint.Set, start *field.History, set *Settings) (*Found, error) {
-	f = given(f)
-	if err := refuseLosses(problemMinimum, f); err != nil {
-		return nil, err
+	if f = given(f); f != nil {
+		if err := conservative(problemMinimum, f); err != nil {
+			return nil, err
+		}
+		if err := refuseLorentzian(problemMinimum, f); err != nil {
+			return nil, err
+		}
 	}
-	if err := refuseLorentzian(problemMinimum, f); err != nil {
-		return nil, err
-	}
-	p, err := newProblem(problemMinimum, f, held, start, set)
+	m, err := newMinimum(problemMinimum, f, held, start, set)
 	if err != nil {
 		return nil, err
 	}
-	m := &minimum{problem: p}
-	m.rep.Push = "−∂S/∂φ at the event, the impulse that holds the pin"
-	m.rep.Rows = p.free.N
-	if err := m.begin(); err != nil {
-		return nil, err
-	}
-	if p.set.Method == LBFGS && (p.hard != nil || p.bounds != nil) {
+	if m.set.Method == LBFGS && (m.hard != nil || m.bounds != nil) {
 		return nil, &Refusal{Problem: problemMinimum, Why: "L-BFGS with hard linear conditions or bounds; want Newton"}
 	}
-	if p.set.Method != LBFGS {
+	if m.set.Method != LBFGS {
 		err := m.analyse()
 		if err == nil {
 			return m.newton(ctx)
 		}
-		if large := (*TooLarge)(nil); p.set.Method == Newton || p.hard != nil || p.bounds != nil || !errors.As(err, &large) {
+		if large := (*TooLarge)(nil); m.set.Method == Newton || m.hard != nil || m.bounds != nil || !errors.As(err, &large) {
 			return nil, err
 		}
 		m.hess = nil
@@ -73,7 +68,20 @@ func Minimum(ctx context.Context, f Functional, held *constraint.Set, start *fie
 	return m.lbfgs(ctx)
 }
 
-// minimum is a minimum problem being solved.
+// conservative returns a *Refusal unless the equation comes from an action.
+func conservative(problem string, f Functional) error {
+	err := f.Conservative()
+	if err == nil {
+		return nil
+	}
+	why := err.Error()
+	if part := (*action.NoActionError)(nil); errors.As(err, &part) {
+		why = part.Part + " does not come from an action; ask for the least residual"
+	}
+	return &Refusal{Problem: problem, Why: why, Cause: err}
+}
+
+// minimum is a minimum problem, or another with ∂S/∂φ = 0, being solved.
 type minimum struct {
 	*problem
 	leads             []int32
@@ -87,25 +95,33 @@ type minimum struct {
 	damped, delta     []float64
 }
 
-// begin evaluates the start.
-func (m *minimum) begin() error {
-	for k := range m.free.N {
-		m.leads = append(m.leads, int32(m.free.Lead(k)))
+// newMinimum evaluates the action and its derivatives at the start.
+func newMinimum(name string, f Functional, held *constraint.Set, start *field.History, set *Settings) (*minimum, error) {
+	p, err := newProblem(name, f, held, start, set)
+	if err != nil {
+		return nil, err
 	}
-	m.second = m.f.SecondVariationMatrix(nil, m.h)
-	m.slope = m.f.Gradient(nil, m.h)
+	m := &minimum{problem: p}
+	f = p.f // with the cost of soft conditions
+	m.rep.Push = "−∂S/∂φ at the event, the impulse that holds the pin"
+	m.rep.Rows = p.free.N
+	for k := range p.free.N {
+		m.leads = append(m.leads, int32(p.free.Lead(k)))
+	}
+	m.second = f.SecondVariationMatrix(nil, m.h)
+	m.slope = f.Gradient(nil, m.h)
 	m.trialSlope = m.slope.Clone()
 	for _, v := range []*[]float64{&m.grad, &m.trialGrad, &m.pure, &m.x} {
-		*v = make([]float64, m.free.N)
+		*v = make([]float64, p.free.N)
 	}
 	m.free.Reduce(m.grad, m.slope)
-	m.value = m.f.Value(m.h)
+	m.value = f.Value(m.h)
 	m.measure()
 	m.rep.Before, m.rep.CostBefore = m.rep.After, m.value
 	if n := m.rep.Before; math.IsNaN(n.Max-n.Max) || math.IsNaN(m.value-m.value) {
-		return fmt.Errorf("minimize: action of the start history is %v, its gradient %v at %v; want a start for which both can be evaluated", m.value, n.Max, n.At)
+		return nil, fmt.Errorf("minimize: action of the start history is %v, its gradient %v at %v; want a start for which both can be evaluated", m.value, n.Max, n.At)
 	}
-	return nil
+	return m, nil
 }
 
 // analyse prepares the factorisation, or returns a *TooLarge.
@@ -201,16 +217,17 @@ func (m *minimum) finish(status Status, reason string, cause error) (*Found, err
 		push.Data[e] = -g
 	}
 	var by constraint.Multipliers
-	mu := m.purify(m.grad, m.h)
+	grad := m.free.Reduce(nil, m.slope)
+	mu := m.purify(grad, m.h)
 	for _, v := range mu {
 		by.Rows = append(by.Rows, -v)
 	}
 	if m.bounds != nil {
 		by.Bounds = make([]float64, m.free.N)
-		rest := m.grad
+		rest := grad
 		if m.hard != nil {
 			rest = make([]float64, m.free.N)
-			m.hard.tangent(rest, m.grad, mu)
+			m.hard.tangent(rest, grad, mu)
 		}
 		for u, active := range m.bounds.active {
 			if active {

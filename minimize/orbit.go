@@ -132,7 +132,7 @@ func (o *orbit) analyse() error {
 	n := o.free.N
 	o.second = o.s.second(o.h, o.period)
 	o.hess = newHessian(o.second, o.free, o.grid())
-	if _, err := o.factoriser(o.hess.pattern, "want a smaller block or higher limits in the settings"); err != nil {
+	if _, err := o.symbolic(o.hess.pattern, "want a smaller block or higher limits in the settings"); err != nil {
 		return err
 	}
 	m := len(o.held)

@@ -107,26 +107,23 @@ const (
 // limit of steps, the context, an action that rises because the curvature has
 // outgrown an explicit step, or is not finite. The push of a reaction is −∂S/∂φ(E).
 func Relax(ctx context.Context, f Functional, held *constraint.Set, start *field.History, set *RelaxSettings) (*Relaxed, error) {
-	f = given(f)
-	if err := refuseLosses(problemRelax, f); err != nil {
-		return nil, err
-	}
-	if err := refuseLorentzian(problemRelax, f); err != nil {
-		return nil, err
+	if f = given(f); f != nil {
+		if err := conservative(problemRelax, f); err != nil {
+			return nil, err
+		}
+		if err := refuseLorentzian(problemRelax, f); err != nil {
+			return nil, err
+		}
 	}
 	c, err := set.with()
 	if err != nil {
 		return nil, err
 	}
-	p, err := newProblem(problemRelax, f, held, start, c.settings())
+	m, err := newMinimum(problemRelax, f, held, start, c.settings())
 	if err != nil {
 		return nil, err
 	}
-	d, err := newActionDescent(p)
-	if err != nil {
-		return nil, err
-	}
-	return relax(ctx, d, c)
+	return relax(ctx, newActionDescent(m), c)
 }
 
 // RelaxResidual is Relax for the cost C = Σ hk r²/2q² of LeastResidual,

@@ -18,7 +18,7 @@ const (
 	Converged Status = iota // solved to the tolerance
 	Stalled                 // no step improves the history any more
 	Stopped                 // iteration limit, or the context ended
-	Singular                // the matrix at the solution is not positive definite
+	Singular                // the matrix at the solution is singular or has the wrong signs
 )
 
 // String returns the status in lower case.
@@ -52,7 +52,7 @@ type Norm struct {
 
 // A Report says what a solve did and how well it ended.
 type Report struct {
-	Problem string // least residual, minimum
+	Problem string // least residual, minimum, stationary, saddle
 	Method  string
 	Status  Status
 	Reason  string // why it ended, in words
@@ -63,11 +63,11 @@ type Report struct {
 	Redundant int // conditions that repeat others
 
 	// Norms of the residual r (least residual) or of ∂S/∂φ/hk over the free
-	// events (minimum), at the start history adjusted to the pins and at the
-	// end.
+	// events (all others, without its parts along zero modes held), at the start
+	// history adjusted to the pins and at the end.
 	Before, After Norm
 
-	// The cost Σ hk r²/2q² (least residual), or the action (minimum).
+	// The cost Σ hk r²/2q² (least residual), or the action.
 	CostBefore, CostAfter float64
 
 	// Scale is the largest single term of the equation over the block at the
@@ -87,6 +87,10 @@ type Report struct {
 	Front          int     // order of the largest front; 0 without a factorisation
 	Damping        float64 // last λ
 	Wall           time.Duration
+
+	// Inertia says what kind of stationary point was found. Nil for the least
+	// residual and the minimum, and where a solve ended before it was counted.
+	Inertia *Inertia
 
 	Push  string // what the Push of a Reaction is
 	Trace []Step // if asked for
@@ -135,11 +139,16 @@ func (r Report) String() string {
 		fmt.Fprintf(&b, " (largest front %d)", r.Front)
 	}
 	fmt.Fprintf(&b, ", %.3g s\n", r.Wall.Seconds())
+	if r.Inertia != nil {
+		fmt.Fprintf(&b, "  inertia   %v\n", r.Inertia)
+	}
 	fmt.Fprintf(&b, "  reactions %s", r.Push)
 	return b.String()
 }
 
 const (
-	problemResidual = "least residual"
-	problemMinimum  = "minimum"
+	problemResidual   = "least residual"
+	problemMinimum    = "minimum"
+	problemStationary = "stationary"
+	problemSaddle     = "saddle"
 )

@@ -65,6 +65,27 @@ type Settings struct {
 	Memory float64
 	Work   float64
 
+	// ZeroModes are directions in which Stationary and Saddle do not go: the
+	// outcome differs from the start, adjusted to the conditions, by nothing that
+	// overlaps with any of them, ∫ a (φ − φ_start) dx dt = 0. Their values at fixed
+	// events do not matter.
+	ZeroModes []*field.History
+
+	// Shifts holds translations in the same way, their directions being the
+	// slopes, along an axis, of the start history adjusted to the conditions.
+	// Stationary and Saddle only.
+	Shifts Shift
+
+	// MinimumNorm accepts a stationary point with a singular second variation:
+	// of a block with many answers the one nearest to the start, in the sense of
+	// ∫ (φ − φ_start)² dx dt, counts as converged. Stationary only.
+	MinimumNorm bool
+
+	// Reference, if not nil, is a history on the block whose Morse index,
+	// under the same conditions, Stationary and Saddle count as well. It need
+	// neither be stationary nor satisfy the conditions.
+	Reference *field.History
+
 	// Progress, if not nil, gets one line for every trial step.
 	Progress io.Writer
 
