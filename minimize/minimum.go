@@ -26,6 +26,12 @@ import (
 // positive definite. [Nocedal & Wright 2006, Numerical Optimization, chapters 3,
 // 7]
 //
+// Bounds want Newton's method. Each step solves for the values that are not held
+// against a bound, is cut at the bounds, and is followed by sweeps of projected
+// Gauss–Seidel over the model, which find most of what is held next. [Bertsekas
+// 1982, SIAM J. Control Optim. 20, 221; Gräser & Kornhuber 2009, J. Comput. Math.
+// 27, 1]
+//
 // A Lorentzian density, whose stationary histories are saddles, is refused with
 // a *Refusal. The start history is adjusted to the conditions first and is not
 // changed. nil conditions hold nothing, nil settings are the defaults.

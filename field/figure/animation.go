@@ -26,6 +26,7 @@ type Frame struct {
 type Animation struct {
 	Frames    []Frame
 	Component int
+	Region    *lattice.Region // its other events are left blank; nil shows them all
 
 	Title                      string
 	XLabel, TLabel, ValueLabel string // default "x", "t", "φ"; write the unit in them
@@ -100,7 +101,7 @@ func (a Animation) reel() (*reel, error) {
 		return data, b.draw(data)
 	}
 	r.frame = func(i int, data draw.Canvas, img *image.RGBA, area image.Rectangle) {
-		paint(img, area, a.Frames[i].History, a.Component, s)
+		paint(img, area, a.layer(i), s)
 		p := sh.axes()
 		for _, curve := range m.strokes() {
 			curve.Plot(data, p)
@@ -121,13 +122,13 @@ func (a Animation) extent() (low, high float64, whole bool, err error) {
 		if f.History == nil {
 			return 0, 0, false, fmt.Errorf("frame %d without a history", i)
 		}
-		if err := checkComponent(f.History, a.Component); err != nil {
+		if err := a.layer(i).check(); err != nil {
 			return 0, 0, false, fmt.Errorf("frame %d: %w", i, err)
 		}
-		if err := checkSameBlock(f.History.Block, a.Frames[0].History.Block); err != nil {
+		if err := checkSameBlock(f.History.Block, a.Frames[0].History.Block, "frame 0"); err != nil {
 			return 0, 0, false, fmt.Errorf("frame %d: %w", i, err)
 		}
-		l, h, w := extent(f.History, a.Component)
+		l, h, w := a.layer(i).extent()
 		low, high, whole = min(low, l), max(high, h), whole && w
 	}
 	if low > high {
@@ -136,15 +137,18 @@ func (a Animation) extent() (low, high float64, whole bool, err error) {
 	return low, high, whole, nil
 }
 
+// layer returns what frame i shows.
+func (a Animation) layer(i int) layer { return layer{a.Frames[i].History, a.Component, a.Region} }
+
 // checkSameBlock returns an error that names the axis on which the events of b lie
-// elsewhere than those of the first frame.
-func checkSameBlock(b, first lattice.Block) error {
+// elsewhere than those of the block of so and so.
+func checkSameBlock(b, first lattice.Block, of string) error {
 	for _, axis := range []struct {
 		name      string
 		got, want lattice.Axis
 	}{{"time", b.Time, first.Time}, {"space", b.Space, first.Space}} {
 		if g, w := axis.got, axis.want; g.Sites != w.Sites || g.From != w.From || g.Step != w.Step {
-			return fmt.Errorf("%s axis of %d sites from %g to %g; want that of frame 0, %d sites from %g to %g", axis.name, g.Sites, g.From, g.To(), w.Sites, w.From, w.To())
+			return fmt.Errorf("%s axis of %d sites from %g to %g; want that of %s, %d sites from %g to %g", axis.name, g.Sites, g.From, g.To(), of, w.Sites, w.From, w.To())
 		}
 	}
 	return nil

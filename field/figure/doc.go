@@ -45,7 +45,8 @@
 // is linear in the value, so that it survives grey-scale print. Curves take the
 // eight colours of [Okabe & Ito 2002, Color Universal Design], yellow left out,
 // each with a dash pattern of its own. Values that are NaN or infinite are drawn
-// in a green that neither colour map contains, and the legend says so.
+// in a green that neither colour map contains, and the legend says so. What is not
+// in the Region of a map is left blank.
 //
 // # Large histories
 //

@@ -21,6 +21,7 @@ import (
 type Map struct {
 	History   *field.History
 	Component int
+	Region    *lattice.Region // its other events are left blank; nil shows them all
 
 	Title                      string
 	XLabel, TLabel, ValueLabel string // default "x", "t", "φ"; write the unit in them
@@ -65,10 +66,11 @@ func (m Map) draw(c draw.Canvas, dpi float64) error {
 
 // drawOn draws the map on c and returns the area of the data.
 func (m Map) drawOn(c draw.Canvas, dpi float64) (data draw.Canvas, err error) {
-	if err := checkComponent(m.History, m.Component); err != nil {
+	l := layer{m.History, m.Component, m.Region}
+	if err := l.check(); err != nil {
 		return data, err
 	}
-	low, high, whole := extent(m.History, m.Component)
+	low, high, whole := l.extent()
 	if low > high {
 		return data, fmt.Errorf("component %d has no finite value among its %d", m.Component, m.History.Block.Slices()*m.History.Block.Sites())
 	}
@@ -80,7 +82,7 @@ func (m Map) drawOn(c draw.Canvas, dpi float64) (data draw.Canvas, err error) {
 	if err != nil {
 		return data, err
 	}
-	sh.plotters = append([]plot.Plotter{picture{m.History, m.Component, s, dpi}}, m.strokes()...)
+	sh.plotters = append([]plot.Plotter{picture{l, s, dpi}}, m.strokes()...)
 	if data, err = sh.draw(c); err != nil {
 		return data, err
 	}
@@ -184,16 +186,15 @@ func cells(a lattice.Axis) ([2]float64, error) {
 
 // A picture plots a history as an image.
 type picture struct {
-	history   *field.History
-	component int
-	shade     *shade
-	dpi       float64
+	layer layer
+	shade *shade
+	dpi   float64
 }
 
 // Plot draws the image on the data area c of p.
 func (q picture) Plot(c draw.Canvas, p *plot.Plot) {
 	size := c.Size()
-	img := raster(q.history, q.component, int(size.X.Dots(q.dpi)+0.5), int(size.Y.Dots(q.dpi)+0.5), q.shade)
+	img := raster(q.layer, int(size.X.Dots(q.dpi)+0.5), int(size.Y.Dots(q.dpi)+0.5), q.shade)
 	plotter.NewImage(img, p.X.Min, p.Y.Min, p.X.Max, p.Y.Max).Plot(c, p)
 }
 

@@ -12,6 +12,9 @@ import (
 // which neither colour map contains.
 var notFinite = color.RGBA{0x00, 0x9E, 0x73, 0xFF}
 
+// blank is what is not in the region of a map: the paper.
+var blank = color.RGBA{0xFF, 0xFF, 0xFF, 0xFF}
+
 // A shade turns values into colours: low into the first of the table, high into
 // the last, values beyond them likewise.
 type shade struct {
