@@ -35,6 +35,8 @@ import (
 // Quart. Appl. Math. 2, 164; Marquardt 1963, J. SIAM 11, 431; Nielsen 1999,
 // IMM-REP-1999-05; Transtrum & Sethna 2012, arXiv:1201.5885]
 //
+// Settings.Strategy says how the solve comes near a solution before that.
+//
 // The start history is adjusted to the conditions first and is not changed. nil
 // conditions hold nothing, nil settings are the defaults.
 //
@@ -52,6 +54,10 @@ func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 	if err != nil {
 		return nil, err
 	}
+	l.rep.Before, l.rep.CostBefore = l.norm(l.res.Data, l.normal.rows), l.cost(l.sum)
+	if err := l.prepare(ctx); err != nil {
+		return nil, err
+	}
 	return l.solve(ctx)
 }
 
@@ -67,6 +73,8 @@ type least struct {
 	damped        []float64      // values of JᵀJ + λ
 	delta, curved []float64      // the step without and with its curvature
 	sum           float64        // Σ r²
+	lifted        map[int]bool   // rows left out
+	exact         bool           // h comes from the march
 }
 
 func newLeast(p *problem, s *action.Discrete) (*least, error) {
@@ -99,7 +107,7 @@ func newLeast(p *problem, s *action.Discrete) (*least, error) {
 // rows returns the events with a field equation that is not lifted.
 func (l *least) rows() ([]int32, error) {
 	b := l.s.Block()
-	lifted := make(map[int]bool)
+	l.lifted = make(map[int]bool)
 	for _, at := range l.set.Lifted {
 		n, i, err := b.Index(at)
 		if err != nil {
@@ -113,12 +121,12 @@ func (l *least) rows() ([]int32, error) {
 			if k, _ := l.free.At(e); k >= 0 {
 				return nil, fmt.Errorf("minimize: lifted row at %v, where component %d is free; want a pinned event", at, c)
 			}
-			lifted[e] = true
+			l.lifted[e] = true
 		}
 	}
 	var rows []int32
 	for e := range l.h.Data {
-		if n, _, i := l.h.Place(e); l.equation(n, i) && !lifted[e] {
+		if n, _, i := l.h.Place(e); l.equation(n, i) && !l.lifted[e] {
 			rows = append(rows, int32(e))
 		}
 	}
@@ -229,7 +237,6 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 	}
 	l.linearise()
 	l.measure()
-	l.rep.Before, l.rep.CostBefore = l.rep.After, l.rep.CostAfter
 	first := l.set.Damping
 	if first == 0 {
 		first = 1e-6
@@ -284,7 +291,7 @@ func (l *least) solved() (done bool, reason string) {
 // they halve the largest residual.
 func (l *least) polish(ctx context.Context, d *damping, reason string) (*Found, error) {
 	d.lambda = d.least
-	if l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.factor(d.lambda) != nil {
+	if l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.exact && l.rep.Iterations == 0 || l.factor(d.lambda) != nil {
 		return l.finish(Converged, reason, nil)
 	}
 	const most = 20
