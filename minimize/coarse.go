@@ -68,7 +68,9 @@ func (l *least) coarse(ctx context.Context, stage *Stage) (*field.History, error
 	}
 	found, err := LeastResidual(ctx, s, held, start, set)
 	var refused *Refusal
+	var deepest string
 	if set.Strategy == CoarseToFine && errors.As(err, &refused) {
+		deepest = "; no coarser: " + refused.Why
 		set.Strategy = BlockWide
 		found, err = LeastResidual(ctx, s, held, start, set)
 	}
@@ -76,7 +78,7 @@ func (l *least) coarse(ctx context.Context, stage *Stage) (*field.History, error
 		return nil, fmt.Errorf("coarse block of %s: %w", describe(onto), err)
 	}
 	stage.add(found.Report)
-	stage.Outcome = fmt.Sprintf("every %d. slice and site: %v, max %.3g", factor, found.Report.Status, found.Report.After.Max)
+	stage.Outcome = fmt.Sprintf("every %d. slice and site: %v, max %.3g", factor, found.Report.Status, found.Report.After.Max) + deepest
 	for _, below := range found.Report.Stages {
 		stage.Outcome += "; below " + below.Outcome
 	}

@@ -40,7 +40,7 @@ func (l *least) dragging(ctx context.Context, stage *Stage) (*field.History, err
 	carried := stage.Outcome
 	a := newAim(sh)
 	a.run(ctx, limit, stage)
-	l.exact = a.rms() < 1e-9
+	l.exact = a.rms() < rounding
 	stage.Outcome = carried + "; " + stage.Outcome
 	return a.h, nil
 }

@@ -23,11 +23,13 @@ func (l *least) shooting(ctx context.Context, stage *Stage) (*field.History, err
 		limit = 200
 	}
 	a.run(ctx, limit, stage)
-	if a.rms() < 1e-9 {
-		l.exact = l.set.Nodes == 1
-	}
+	l.exact = a.rms() < rounding && l.set.Nodes == 1
 	return a.h, nil
 }
+
+// rounding is the misfit below which a march, of values of order one, is not
+// improved by more steps.
+const rounding = 1e-12
 
 // shots returns the least-residual problem as one of marches from so many nodes,
 // evenly spread.
@@ -113,7 +115,7 @@ func (a *aim) run(ctx context.Context, limit int, stage *Stage) {
 		stage.Factorisations++
 		sum, predicted, ok := a.try(d.lambda)
 		if !ok || !(sum < a.sum) {
-			if a.rms() < 1e-12 { // of values of order one: rounding
+			if a.rms() < rounding {
 				outcome = "misfit at rounding level"
 				break
 			}
