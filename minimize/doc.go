@@ -52,7 +52,8 @@
 //
 // The zero value, Fitting, takes Marching where a Cauchy pair is pinned and the
 // equation allows it, and the start alone otherwise; it keeps what marching gives
-// only if that lowers the cost. The report says which was taken, why, and what
+// only if that lowers the cost. Where two slices are pinned and the whole block leaves a
+// residual, it shoots, from the start and from the straight one. The report says which was taken, why, and what
 // each stage did.
 //
 // Two slices of a nonlinear field at different times are joined by many histories.

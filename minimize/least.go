@@ -58,7 +58,8 @@ func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 	if err := l.prepare(ctx); err != nil {
 		return nil, err
 	}
-	return l.solve(ctx)
+	found, err := l.solve(ctx)
+	return l.again(ctx, held, start, set, found, err)
 }
 
 // least is a least-residual problem being solved.

@@ -17,7 +17,7 @@ type Strategy uint8
 
 // The strategies. What each needs and refuses is said in the package comment.
 const (
-	Fitting      Strategy = iota // what fits the conditions: Marching from a Cauchy pair, else BlockWide
+	Fitting      Strategy = iota // Marching from a Cauchy pair, else BlockWide and, between two slices, Shooting
 	BlockWide                    // Levenberg–Marquardt on the whole block from the start history alone
 	Marching                     // the action's march from a pinned Cauchy pair, forward and backward
 	Windows                      // a few slices at a time, each by Levenberg–Marquardt

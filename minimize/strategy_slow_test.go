@@ -63,6 +63,21 @@ func TestShootingAcrossTwentyUnitsSlow(t *testing.T) { shootsAcross(t, 20) }
 
 func TestShootingAcrossFortyUnitsSlow(t *testing.T) { shootsAcross(t, 40) }
 
+// Where nothing is asked for, block-wide steps that end with a residual are
+// followed by shooting, and the report says so.
+func TestFittingAcrossFortyUnitsSlow(t *testing.T) {
+	s, held, start := twoTime(t, 40)
+	found, err := LeastResidual(context.Background(), s, held, start, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	r := found.Report
+	t.Log(r)
+	if r.After.Max > 1e-9 || len(r.Stages) != 2 || r.Strategy != Shooting || r.Stages[0].Used || !r.Stages[1].Used {
+		t.Errorf("%v", r)
+	}
+}
+
 // There is more than one history between the two slices: how many shooting finds
 // from the straight start and variations of it. Two of them are the same if they
 // agree to 1e-6, far above the error of 1e-9 and far below the distance of

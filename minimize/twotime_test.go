@@ -128,3 +128,29 @@ func TestStraightStart(t *testing.T) {
 	}
 	_ = held
 }
+
+// Where dt = dx, two sides of 8 links and no mass, every mode returns after twice
+// the side: the last slice repeats the first with its sign and its sides changed,
+// and slices that do not cannot be joined. Shooting is then tried in vain, from
+// both starts, and the report says so.
+func TestTwoTimesThatCannotBeJoined(t *testing.T) {
+	line := lattice.Axis{Step: 1, Sites: 9, Left: lattice.Held, Right: lattice.Held}
+	s := newAction(t, lattice.Axis{Step: 1, Sites: 9}, line, action.Wave{})
+	row := field.NewSlice(1, 9)
+	row.Data[2], row.Data[5] = 1, 2
+	held := constraint.On(s.Block())
+	held.Slice(0, row)
+	held.Slice(8, row)
+	found, err := LeastResidual(context.Background(), s, held, field.NewHistory(s.Block(), 1), nil)
+	if found == nil {
+		t.Fatal(err)
+	}
+	r := found.Report
+	if len(r.Stages) != 3 || r.Strategy != BlockWide || !r.Stages[0].Used || r.Stages[1].Used || r.Stages[2].Used || r.Stages[2].Strategy != Shooting {
+		t.Errorf("%v\n%v", err, r)
+	}
+	// 1 and 2 want to be −2 and −1 at the mirror images of their sites
+	if r.After.Max < 0.01 {
+		t.Errorf("residual %v of a problem without a solution", r.After.Max)
+	}
+}
