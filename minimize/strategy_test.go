@@ -47,9 +47,9 @@ func TestStrategiesAgreeOnCauchyData(t *testing.T) {
 	}
 }
 
-// Over one unit of time the two-time problem of a massive field between held
+// Over half a unit of time the two-time problem of a massive field between held
 // ends has one solution: no mode of the lattice turns by π in it, the fastest
-// having a frequency of √(4/h² + 1) < 5. All strategies that need no Cauchy pair
+// having a frequency of √(4/h² + 1) < 4.2 and so turning by 2.1. All strategies that need no Cauchy pair
 // must find the history that the slices were taken from.
 func TestStrategiesAgreeOnTwoTimes(t *testing.T) {
 	clock := lattice.Axis{Step: 0.03125, Sites: 17}
