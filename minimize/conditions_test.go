@@ -328,6 +328,29 @@ func TestGaussMarkovOfAResidual(t *testing.T) {
 	}
 }
 
+func TestStrategiesRefuseSoftConditions(t *testing.T) {
+	b := lattice.Block{Time: lattice.Axis{Step: 0.3, Sites: 6}, Space: lattice.Axis{Step: 0.4, Sites: 5}}
+	s, err := action.New(b, action.Wave{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	held := constraint.On(b)
+	held.Slice(0, field.NewSlice(1, 5))
+	held.Slice(1, field.NewSlice(1, 5))
+	held.Observe(0.9, 0.4, 1, 0.1)
+	start := field.NewHistory(b, 1)
+	for _, way := range []Strategy{Marching, Windows, CoarseToFine, Shooting, Dragging} {
+		var refusal *Refusal
+		if _, err := LeastResidual(context.Background(), s, held, start, &Settings{Strategy: way}); !errors.As(err, &refusal) {
+			t.Errorf("%v: %v, want a *Refusal", way, err)
+		}
+	}
+	found, err := LeastResidual(context.Background(), s, held, start, nil)
+	if err != nil || found.Report.Strategy != BlockWide {
+		t.Errorf("left to itself: %v by %v, want block-wide", err, found.Report.Strategy)
+	}
+}
+
 func TestLeastResidualRefusesBounds(t *testing.T) {
 	b := lattice.Block{Time: lattice.Axis{Step: 0.3, Sites: 6}, Space: lattice.Axis{Step: 0.4, Sites: 5}}
 	s, err := action.New(b, action.Wave{})

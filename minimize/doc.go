@@ -98,6 +98,34 @@
 // least residual. Both vanish where a pin asks for nothing that the equation would
 // not do by itself. Each soft condition has a misfit.
 //
+// # Strategies
+//
+// Levenberg–Marquardt on the whole block stalls where the start is too far from
+// any solution: on long blocks, and where slices at two times are pinned. A
+// [Strategy] in the settings of LeastResidual comes nearer first; the solve for
+// the whole block then ends the work, to the same tolerance for all of them.
+//
+//	Marching      a Cauchy pair is pinned: the action's march, which is the
+//	              solution if nothing else is held
+//	Windows       16 new slices at a time; from a Cauchy pair the slices behind
+//	              stay, without one the window grows
+//	CoarseToFine  the block without every other slice and site first
+//	Shooting      the first two slices are corrected until the march from them
+//	              meets the pins; several nodes make it multiple shooting
+//	Dragging      the pins are carried to where they are wanted by
+//	              pseudo-arclength steps
+//
+// The zero value, Fitting, takes Marching where a Cauchy pair is pinned and the
+// equation allows it, and the start alone otherwise; it keeps what marching gives
+// only if that lowers the cost. Where two slices are pinned and the whole block leaves a
+// residual, it shoots, from the start and from the straight one. The report says which was taken, why, and what
+// each stage did.
+//
+// Two slices of a nonlinear field at different times are joined by many histories.
+// [Straight] makes a start that knows the conditions alone, and [Vary] others
+// from it, by number. Shooting from the straight start has joined the slices of a
+// sine-Gordon collision over 40 units of time, where block-wide steps stall.
+//
 // # Outcome
 //
 // Solvers return a [Found] with the history, the reactions and a [Report], flows
@@ -114,5 +142,6 @@
 // O(N^1.5) operations and O(N log N) memory for N events. A block of 100 slices
 // and 400 sites takes a few hundredths of a second for each factorisation, and a
 // cold start over eight units of time of a sine-Gordon collision about twenty of
-// them. Much longer blocks need a start that knows more than the first slice.
+// them. Growing windows take a block of 1024 × 1024 events, from two
+// slices, in less than a minute and 3 GB.
 package minimize

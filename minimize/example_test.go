@@ -156,3 +156,44 @@ func ExampleSaddle() {
 	// action 3.434, core 1.599
 	// index 1, lowest eigenvalue -1.65
 }
+
+// A pendulum chain at rest at two times, one turn apart: which history joins
+// them? The start is a straight line in time; shooting corrects its first step.
+func ExampleStraight() {
+	block, err := lattice.NewBlock(
+		lattice.Axis{Step: 0.1, Sites: 21},
+		lattice.Axis{Step: 0.25, Sites: 17, Periodic: true},
+	)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	s, err := action.New(block, action.Wave{Potential: action.SineGordon{}})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	first, last := field.NewSlice(1, 17), field.NewSlice(1, 17)
+	for i := range last.Data {
+		last.Data[i] = 2 * math.Pi
+	}
+	held := constraint.On(block)
+	held.Slice(0, first)
+	held.Slice(20, last)
+	start, err := minimize.Straight(held, field.NewHistory(block, 1))
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	found, err := minimize.LeastResidual(context.Background(), s, held, start, &minimize.Settings{Strategy: minimize.Shooting})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	h := found.History
+	fmt.Printf("%v by %v\n", found.Report.Status, found.Report.Strategy)
+	fmt.Printf("half way at half time: %.4f = %.4f\n", h.At(10, 0, 3), math.Pi)
+	// Output:
+	// converged by shooting
+	// half way at half time: 3.1416 = 3.1416
+}

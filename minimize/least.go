@@ -35,6 +35,8 @@ import (
 // Quart. Appl. Math. 2, 164; Marquardt 1963, J. SIAM 11, 431; Nielsen 1999,
 // IMM-REP-1999-05; Transtrum & Sethna 2012, arXiv:1201.5885]
 //
+// Settings.Strategy says how the solve comes near a solution before that.
+//
 // The start history is adjusted to the conditions first and is not changed. nil
 // conditions hold nothing, nil settings are the defaults.
 //
@@ -56,7 +58,12 @@ func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 	if err != nil {
 		return nil, err
 	}
-	return l.solve(ctx)
+	l.rep.Before, l.rep.CostBefore = l.norm(l.res.Data, l.normal.rows), l.cost(l.sum)
+	if err := l.prepare(ctx); err != nil {
+		return nil, err
+	}
+	found, err := l.solve(ctx)
+	return l.again(ctx, held, start, set, found, err)
 }
 
 // least is a least-residual problem being solved.
@@ -73,6 +80,8 @@ type least struct {
 	soft          bool           // the cost has terms beside the residual
 	extra         *field.History // gradient or curvature of those
 	sum           float64        // 2C/unit: Σ r², and the soft conditions
+	lifted        map[int]bool   // rows left out
+	exact         bool           // h comes from the march
 }
 
 func newLeast(p *problem, s *action.Discrete) (*least, error) {
@@ -118,7 +127,7 @@ func (l *least) begin() error {
 // rows returns the events with a field equation that is not lifted.
 func (l *least) rows() ([]int32, error) {
 	b := l.s.Block()
-	lifted := make(map[int]bool)
+	l.lifted = make(map[int]bool)
 	for _, at := range l.set.Lifted {
 		n, i, err := b.Index(at)
 		if err != nil {
@@ -132,12 +141,12 @@ func (l *least) rows() ([]int32, error) {
 			if k, _ := l.free.At(e); k >= 0 {
 				return nil, fmt.Errorf("minimize: lifted row at %v, where component %d is free; want a pinned event", at, c)
 			}
-			lifted[e] = true
+			l.lifted[e] = true
 		}
 	}
 	var rows []int32
 	for e := range l.h.Data {
-		if n, _, i := l.h.Place(e); l.equation(n, i) && !lifted[e] {
+		if n, _, i := l.h.Place(e); l.equation(n, i) && !l.lifted[e] {
 			rows = append(rows, int32(e))
 		}
 	}
@@ -290,7 +299,6 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 	}
 	l.linearise()
 	l.measure()
-	l.rep.Before, l.rep.CostBefore = l.rep.After, l.rep.CostAfter
 	first := l.set.Damping
 	if first == 0 {
 		first = 1e-6
@@ -345,7 +353,7 @@ func (l *least) solved() (done bool, reason string) {
 // they halve the largest residual.
 func (l *least) polish(ctx context.Context, d *damping, reason string) (*Found, error) {
 	d.lambda = d.least
-	if l.soft || l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.factor(d.lambda) != nil {
+	if l.soft || l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.exact && l.rep.Iterations == 0 || l.factor(d.lambda) != nil {
 		return l.finish(Converged, reason, nil)
 	}
 	const most = 20

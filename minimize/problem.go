@@ -169,13 +169,16 @@ func (p *problem) step(s Step) {
 // end completes the report. The error is nil only for Converged.
 func (p *problem) end(status Status, reason string, cause error, push *field.History, by constraint.Multipliers) (*Found, error) {
 	p.rep.Status, p.rep.Reason = status, reason
-	p.rep.Wall = time.Since(p.began)
+	p.rep.Wall = p.since()
 	found := &Found{History: p.h, Report: p.rep, Reactions: p.free.ReactionsWith(p.h, push, by), Misfits: p.free.Misfits(p.h)}
 	if status == Converged {
 		return found, nil
 	}
 	return found, &NotConverged{Found: found, Cause: cause}
 }
+
+// since returns the time since the solve began.
+func (p *problem) since() time.Duration { return time.Since(p.began) }
 
 // norm returns the size of values[e] over the given events.
 func (p *problem) norm(values []float64, rows []int32) Norm {

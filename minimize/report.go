@@ -54,8 +54,15 @@ type Norm struct {
 type Report struct {
 	Problem string // least residual, minimum, stationary, saddle
 	Method  string
-	Status  Status
-	Reason  string // why it ended, in words
+
+	// Strategy is what was asked for or chosen, and Why; Stages is what it did
+	// before the solve for the whole block. Least residual only.
+	Strategy Strategy
+	Why      string
+	Stages   []Stage
+
+	Status Status
+	Reason string // why it ended, in words
 
 	Rows      int // equations
 	Unknowns  int
@@ -125,6 +132,12 @@ func (r Report) String() string {
 	var b strings.Builder
 	fmt.Fprintf(&b, "%s: %v (%s)\n", r.Problem, r.Status, r.Reason)
 	fmt.Fprintf(&b, "  method    %s\n", r.Method)
+	if r.Problem == problemResidual {
+		fmt.Fprintf(&b, "  strategy  %v (%s)\n", r.Strategy, r.Why)
+	}
+	for _, s := range r.Stages {
+		fmt.Fprintf(&b, "  stage     %v\n", s)
+	}
 	fmt.Fprintf(&b, "  size      %d equations, %d unknowns, %d values held", r.Rows, r.Unknowns, r.Fixed)
 	if r.Redundant > 0 {
 		fmt.Fprintf(&b, ", %d conditions repeated", r.Redundant)

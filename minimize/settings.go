@@ -58,6 +58,13 @@ type Settings struct {
 	// there, which action.Discrete.Residual gives. Least residual only.
 	Lifted []lattice.Event
 
+	// Strategy says how the least residual comes near a solution; Window is the
+	// number of new slices of a window (0 means 16), Nodes the number of slice
+	// pairs from which shooting marches (0 means 1; more is multiple shooting).
+	Strategy Strategy
+	Window   int
+	Nodes    int
+
 	// Method, Memory (bytes) and Work (floating-point operations of one
 	// factorisation) choose how Minimum solves. Memory and Work limit the
 	// factor of the least residual, too. 0 means 4e9 bytes and 4e12 operations.
@@ -119,6 +126,12 @@ func (s *Settings) with() (Settings, error) {
 	if c.Iterations < 0 {
 		return c, fmt.Errorf("minimize: %d iterations in the settings; want a number ≥ 0 (0 for the default)", c.Iterations)
 	}
+	if c.Window < 0 || c.Nodes < 0 {
+		return c, fmt.Errorf("minimize: windows of %d slices and %d nodes in the settings; want numbers ≥ 0 (0 for the default)", c.Window, c.Nodes)
+	}
+	if c.Strategy > Dragging {
+		return c, fmt.Errorf("minimize: %v in the settings; want one from Fitting to Dragging", c.Strategy)
+	}
 	if c.Method > LBFGS {
 		return c, fmt.Errorf("minimize: %v in the settings; want Auto, Newton or LBFGS", c.Method)
 	}
@@ -131,5 +144,11 @@ func (s *Settings) with() (Settings, error) {
 	set(&c.ResidualScale, 1)
 	set(&c.Memory, 4e9)
 	set(&c.Work, 4e12)
+	if c.Window == 0 {
+		c.Window = 16
+	}
+	if c.Nodes == 0 {
+		c.Nodes = 1
+	}
 	return c, nil
 }
