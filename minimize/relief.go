@@ -1,0 +1,145 @@
+package minimize
+
+import (
+	"cmp"
+	"math"
+	"slices"
+
+	"github.com/tenter-go/tenter/lattice"
+)
+
+// A group is the values that one pinned condition holds.
+type group struct {
+	kind   string
+	values []groupValue
+	fixed  bool      // cannot be given up in another solve
+	move   []float64 // of the values when the condition is given up
+}
+
+// A groupValue is one value of a group, with those that rates join to it.
+type groupValue struct {
+	at        lattice.Event
+	component int
+	push      float64 // ∂cost/∂φ, of all of them together
+	joined    []int   // places in the history, its own among them
+}
+
+// holds reports whether the group has a pin; see constraint.Set.Without.
+func (g *group) holds(at lattice.Event, component int, kind string) bool {
+	if kind != g.kind {
+		return false
+	}
+	for _, v := range g.values {
+		if v.at == at && v.component == component {
+			return true
+		}
+	}
+	return false
+}
+
+// groups returns the pinned conditions that push, in the order of the reaction
+// that is largest. apart makes a group of every event.
+func (q *Response) groups(apart bool) []*group {
+	push := make([]float64, len(q.p.h.Data))
+	for _, r := range q.found.Reactions {
+		if _, held := conditionOf(r.Kind); held || r.Kind == "rate" {
+			if e, err := q.index(r.Event, r.Component); err == nil {
+				push[e] = r.Push
+			}
+		}
+	}
+	type key struct {
+		kind string
+		at   lattice.Event
+	}
+	lifted := make(map[lattice.Event]bool)
+	for _, at := range q.p.set.Lifted {
+		if n, i, err := q.p.f.Block().Index(at); err == nil {
+			lifted[q.p.f.Block().At(n, i)] = true
+		}
+	}
+	of := make(map[key]*group)
+	var all []*group
+	for _, r := range q.found.Reactions {
+		extent, held := conditionOf(r.Kind)
+		e, err := q.index(r.Event, r.Component)
+		if !held || err != nil {
+			continue
+		}
+		at := r.Event
+		switch {
+		case apart || extent == alongNothing:
+		case extent == alongSpace:
+			at.X = 0
+		case extent == alongTime:
+			at.T = 0
+		}
+		g := of[key{r.Kind, at}]
+		if g == nil {
+			g = &group{kind: r.Kind, fixed: r.Kind == "end of the axis"}
+			of[key{r.Kind, at}] = g
+			all = append(all, g)
+		}
+		g.fixed = g.fixed || lifted[r.Event]
+		v := groupValue{at: r.Event, component: r.Component}
+		for _, m := range q.joined(e, 1) {
+			v.joined = append(v.joined, m.index)
+			v.push += push[m.index]
+		}
+		g.values = append(g.values, v)
+	}
+	all = slices.DeleteFunc(all, func(g *group) bool {
+		return !slices.ContainsFunc(g.values, func(v groupValue) bool { return v.push != 0 })
+	})
+	for _, g := range all {
+		slices.SortFunc(g.values, func(a, b groupValue) int {
+			return cmp.Or(cmp.Compare(a.at.T, b.at.T), cmp.Compare(a.component, b.component), cmp.Compare(a.at.X, b.at.X))
+		})
+	}
+	return all
+}
+
+// extent says over what the values of one condition stretch.
+type extent uint8
+
+const (
+	alongNothing extent = iota
+	alongSpace
+	alongTime
+)
+
+// conditionOf returns how far a condition of a kind stretches; held is false for
+// reactions of what is not a pin.
+func conditionOf(kind string) (along extent, held bool) {
+	switch kind {
+	case "slice", "part":
+		return alongSpace, true
+	case "left end", "right end", "end of the axis":
+		return alongTime, true
+	case "event":
+		return alongNothing, true
+	}
+	return alongNothing, false
+}
+
+// rank sorts the reliefs and counts the tie.
+func (v *Verdict) rank() {
+	slices.SortStableFunc(v.Reliefs, func(a, b Relief) int { return cmp.Compare(b.Saving, a.Saving) })
+	const alike = 1e-6 // of the cost
+	for from := 0; from < len(v.Reliefs); {
+		to := from + 1
+		for to < len(v.Reliefs) && v.Reliefs[from].Saving-v.Reliefs[to].Saving <= alike*v.Cost {
+			to++
+		}
+		run := v.Reliefs[from:to]
+		slices.SortStableFunc(run, func(a, b Relief) int {
+			return cmp.Or(cmp.Compare(a.Values, b.Values), cmp.Compare(math.Abs(a.Move), math.Abs(b.Move)))
+		})
+		if from == 0 {
+			for v.Tied < len(run) && run[v.Tied].Values == run[0].Values {
+				v.Tied++
+			}
+		}
+		from = to
+	}
+}
