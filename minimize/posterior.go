@@ -37,6 +37,9 @@ func (p *Posterior) Deviation(i int) float64 { return math.Sqrt(p.Covariance.At(
 // 2003, Information Theory, Inference and Learning Algorithms, chapter 27]. A
 // history with an active bound is refused, for its spread is one-sided.
 func (q *Response) Posterior(component int, at ...lattice.Event) (*Posterior, error) {
+	if name := q.found.Report.Problem; q.k.jac == nil && name != problemMinimum {
+		return nil, &Refusal{Problem: "posterior", Why: "a " + name + " history is no maximum of a probability; want a minimum or a least residual"}
+	}
 	if q.k.still != nil {
 		return nil, &Refusal{Problem: "posterior", Why: fmt.Sprintf("%d bounds are active; want a history that stands away from them", q.k.still.count)}
 	}

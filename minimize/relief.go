@@ -37,8 +37,8 @@ func (g *group) holds(at lattice.Event, component int, kind string) bool {
 	return false
 }
 
-// groups returns the pinned conditions that push, in the order of the reaction
-// that is largest. apart makes a group of every event.
+// groups returns the pinned conditions that push, in the order of their largest
+// reactions. apart makes a group of every event.
 func (q *Response) groups(apart bool) []*group {
 	push := make([]float64, len(q.p.h.Data))
 	for _, r := range q.found.Reactions {
@@ -88,8 +88,15 @@ func (q *Response) groups(apart bool) []*group {
 		}
 		g.values = append(g.values, v)
 	}
+	var largest float64
+	for _, g := range all {
+		for _, v := range g.values {
+			largest = max(largest, math.Abs(v.push))
+		}
+	}
+	const negligible = 1e-6 // of the largest push; such a condition would have to move a million times as far
 	all = slices.DeleteFunc(all, func(g *group) bool {
-		return !slices.ContainsFunc(g.values, func(v groupValue) bool { return v.push != 0 })
+		return !slices.ContainsFunc(g.values, func(v groupValue) bool { return math.Abs(v.push) > negligible*largest })
 	})
 	for _, g := range all {
 		slices.SortFunc(g.values, func(a, b groupValue) int {
@@ -123,12 +130,11 @@ func conditionOf(kind string) (along extent, held bool) {
 }
 
 // rank sorts the reliefs and counts the tie.
-func (v *Verdict) rank() {
-	slices.SortStableFunc(v.Reliefs, func(a, b Relief) int { return cmp.Compare(b.Saving, a.Saving) })
-	const alike = 1e-6 // of the cost
+func (v *Verdict) rank(alike float64) {
+	slices.SortStableFunc(v.Reliefs, func(a, b Relief) int { return cmp.Compare(b.saved(), a.saved()) })
 	for from := 0; from < len(v.Reliefs); {
 		to := from + 1
-		for to < len(v.Reliefs) && v.Reliefs[from].Saving-v.Reliefs[to].Saving <= alike*v.Cost {
+		for to < len(v.Reliefs) && v.Reliefs[from].saved()-v.Reliefs[to].saved() <= alike*v.Cost {
 			to++
 		}
 		run := v.Reliefs[from:to]
@@ -136,10 +142,18 @@ func (v *Verdict) rank() {
 			return cmp.Or(cmp.Compare(a.Values, b.Values), cmp.Compare(math.Abs(a.Move), math.Abs(b.Move)))
 		})
 		if from == 0 {
-			for v.Tied < len(run) && run[v.Tied].Values == run[0].Values {
+			for v.Tied = 0; v.Tied < len(run) && run[v.Tied].Values == run[0].Values; {
 				v.Tied++
 			}
 		}
 		from = to
 	}
+}
+
+// saved is the saving by the best that is known.
+func (r Relief) saved() float64 {
+	if r.Settled {
+		return r.Confirmed
+	}
+	return r.Saving
 }

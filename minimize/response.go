@@ -18,8 +18,8 @@ import (
 //
 // K being the second derivative, with Aδφ kept at zero for the linear conditions
 // A. For the least residual K is hk/q² (JᵀJ + Σ r ∂²r), J = ∂r/∂φ, which is that
-// of Gauss and Newton where the equation is met; for a minimum it is the second
-// variation. Observations and cost conditions add their curvature to both, and a
+// of Gauss and Newton where the equation is met; for a minimum, or a stationary
+// history, it is the second variation. Observations and cost conditions add their curvature to both, and a
 // bound that is active stays so. K is exact, and the first order in δp is: the
 // response is the derivative of what the solver finds.
 //
@@ -35,8 +35,8 @@ type Response struct {
 	equations map[int]bool
 }
 
-// NewResponse prepares the responses of a history that LeastResidual or Minimum
-// has found for the action f, the conditions and the settings. They must be the
+// NewResponse prepares the responses of a history that LeastResidual, Minimum or
+// another solver of ∂S/∂φ = 0 has found for the action f, the conditions and the settings. They must be the
 // same; a history that does not have the cost that its report says is an error.
 // (The action of a least residual is a *action.Discrete.) The matrix K is
 // factorised once, at the solution, since solvers leave no factor of it behind.
@@ -92,14 +92,14 @@ func NewResponse(f Functional, held *constraint.Set, found *Found, set *Settings
 		}
 		q.s = s
 		cost, err = q.least()
-	case problemMinimum:
+	case problemMinimum, "stationary", "saddle":
 		q.k.second = f.SecondVariationMatrix(nil, h)
 		cost = f.Value(h)
 		if g, ok := f.(signed); ok && g.Signature() == action.Lorentzian {
 			q.impulse = 1 // S = ∫T − U has the source as +Jφ
 		}
 	default:
-		return nil, refuse("want a least residual or a minimum")
+		return nil, refuse("want a least residual, a minimum or a stationary history")
 	}
 	if err != nil {
 		return nil, err
@@ -112,7 +112,7 @@ func NewResponse(f Functional, held *constraint.Set, found *Found, set *Settings
 		free.AddCurvature(q.k.terms, h)
 	}
 	q.k.still = q.active()
-	if err := q.k.factorise(q.p, true); err != nil {
+	if err := q.k.factorise(q.p, problemName == problemResidual || problemName == problemMinimum); err != nil {
 		return nil, err
 	}
 	return q, nil

@@ -17,14 +17,14 @@ type Verdict struct {
 	Excess int     // equations and hard linear conditions above unknowns
 	Met    bool    // the residual is within the tolerance: nothing needs relaxing
 
-	// Reliefs has every pinned condition that pushes, the one that saves most
-	// first. Of those that save equally much, to a millionth of the cost, the
-	// one with the fewest values comes first, and then the one that moves least.
-	// Empty if Met.
+	// Reliefs has every pinned condition that pushes, by at least a millionth of
+	// the largest push, the one that saves most first. Of those that save alike
+	// the one with the fewest values comes first, and then the one that moves
+	// least. Empty if Met.
 	Reliefs []Relief
 
-	// Tied is how many of the first reliefs save equally much with equally few
-	// values: no reason but the moves, and what one knows of the data, to prefer
+	// Tied is how many of the first reliefs save alike with equally few values:
+	// there is no reason but the moves, and what one knows of the data, to prefer
 	// one of them.
 	Tied int
 }
@@ -37,9 +37,11 @@ type Relief struct {
 	Push   float64       // its largest |∂cost/∂φ|
 
 	// Saving is by how much the least cost would go down, ½λᵀS⁻¹λ, with λ the
-	// multipliers of the values and S their derivatives by the values. It is
-	// exact for a linear equation. Where the solution for S⁻¹λ was cut short it is
-	// a lower bound, and Partial is set.
+	// multipliers of the values and S their derivatives by the values, but no more
+	// than Cost. It is exact for a linear equation. Where the solution for S⁻¹λ was cut short it is
+	// a lower bound, and Partial is set. With noise of the strength q in the
+	// equation, √(2 Saving) is how many standard deviations a single value is off
+	// what all other conditions tell of it.
 	Saving  float64
 	Partial bool
 
@@ -48,10 +50,12 @@ type Relief struct {
 	Move float64
 	At   lattice.Event
 
-	// Confirmed is what another solve without the condition saved. It is NaN for
-	// conditions further down, for ends without an equation and lifted rows,
-	// which cannot be given up, and if the solve did not converge.
+	// Confirmed is by how much the history of another solve without the condition
+	// costs less. Unless Settled that solve did not converge, and there may be
+	// one that costs less still. It is NaN for conditions further down, and for
+	// ends without an equation and lifted rows, which cannot be given up.
 	Confirmed float64
+	Settled   bool
 
 	group *group
 }
@@ -66,6 +70,10 @@ type Relaxing struct {
 	// Confirm is how many of the first reliefs are confirmed by another solve. 0
 	// means 3, a negative number none.
 	Confirm int
+
+	// Alike is by which fraction of the cost savings that count as equal may
+	// differ. 0 means 0.01.
+	Alike float64
 }
 
 // Verdict finds what each pinned condition of a least residual would save if it
@@ -91,6 +99,13 @@ func (q *Response) Verdict(ctx context.Context, how *Relaxing) (*Verdict, error)
 	if how == nil {
 		how = new(Relaxing)
 	}
+	alike := how.Alike
+	if !(alike >= 0) {
+		return nil, fmt.Errorf("minimize: savings that are alike to %v of the cost; want a number ≥ 0 (0 for the default)", alike)
+	}
+	if alike == 0 {
+		alike = 0.01
+	}
 	confirm := how.Confirm
 	if confirm == 0 {
 		confirm = 3
@@ -102,17 +117,21 @@ func (q *Response) Verdict(ctx context.Context, how *Relaxing) (*Verdict, error)
 	}
 	for _, g := range q.groups(how.Apart) {
 		if ctx.Err() != nil {
-			v.rank()
+			v.rank(alike)
 			return v, context.Cause(ctx)
 		}
-		v.Reliefs = append(v.Reliefs, q.relieve(g))
+		if r := q.relieve(g); r.Saving > 0 {
+			r.Saving = min(r.Saving, v.Cost)
+			v.Reliefs = append(v.Reliefs, r)
+		}
 	}
-	v.rank()
+	v.rank(alike)
 	for i := range min(confirm, len(v.Reliefs)) {
 		if err := q.confirm(ctx, &v.Reliefs[i]); err != nil {
 			return v, err
 		}
 	}
+	v.rank(alike)
 	return v, nil
 }
 
@@ -210,13 +229,16 @@ func (q *Response) confirm(ctx context.Context, r *Relief) error {
 	}
 	set := q.p.set
 	set.Progress, set.Watch, set.Trace = nil, nil, false
+	if set.Iterations == 0 {
+		set.Iterations = 40 // it starts near by
+	}
 	found, err := LeastResidual(ctx, q.s, q.held.Without(g.holds), start, &set)
 	switch {
 	case ctx.Err() != nil:
 		return context.Cause(ctx)
-	case err == nil:
-		r.Confirmed = q.found.Report.CostAfter - found.Report.CostAfter
-	case found == nil:
+	case found != nil:
+		r.Confirmed, r.Settled = q.found.Report.CostAfter-found.Report.CostAfter, err == nil
+	default:
 		return fmt.Errorf("minimize: verdict, without the %s at %v: %w", r.Kind, r.Event, err)
 	}
 	return nil
@@ -257,6 +279,13 @@ func (r Relief) String() string {
 	}
 	if !math.IsNaN(r.Confirmed) {
 		confirmed = fmt.Sprintf(" (%.6g confirmed)", r.Confirmed)
+		if !r.Settled {
+			confirmed = fmt.Sprintf(" (at least %.6g confirmed)", r.Confirmed)
+		}
 	}
-	return fmt.Sprintf("%s at %v, %d values: saves %s%.6g%s, moves by up to %.4g at %v", r.Kind, r.Event, r.Values, bound, r.Saving, confirmed, r.Move, r.At)
+	values := "1 value"
+	if r.Values > 1 {
+		values = fmt.Sprintf("%d values", r.Values)
+	}
+	return fmt.Sprintf("%s at %v, %s: saves %s%.6g%s, moves by up to %.4g at %v", r.Kind, r.Event, values, bound, r.Saving, confirmed, r.Move, r.At)
 }
