@@ -111,6 +111,78 @@ func TestPosteriorAgainstDenseFormula(t *testing.T) {
 	}
 }
 
+// The same for the least residual: hk/q² JᵀJ and Σ aaᵀ/σ² on the free values. A
+// history of zeros is the solution where zero is observed.
+func TestPosteriorOfALeastResidual(t *testing.T) {
+	const q = 0.3
+	s := newAction(t, lattice.Axis{Step: 0.4, Sites: 6}, lattice.Axis{Step: 0.5, Sites: 5}, action.Wave{Potential: action.Mass(1), Alpha: action.Uniform(0.2)})
+	b := s.Block()
+	rest := field.NewHistory(b, 1)
+	held := constraint.On(b)
+	held.Slice(0, rest.Slice(0))
+	held.ObserveSlice(1, rest.Slice(1), 0.1)
+	held.Observe(2, 1, 0, 0.2)
+	held.Mean(3, 0).Soft(0.05)
+	free, err := held.Free(rest)
+	if err != nil {
+		t.Fatal(err)
+	}
+	found := &Found{History: rest, Report: Report{Problem: problemResidual, Unknowns: free.N, Fixed: free.Fixed()}}
+	r, err := NewResponse(s, held, found, &Settings{ResidualScale: q})
+	if err != nil {
+		t.Fatal(err)
+	}
+
+	j := mat.NewDense(len(rest.Data), free.N, nil)
+	jac := s.ResidualJacobian(nil, rest)
+	for e := range jac.Rows() {
+		columns, values := jac.Row(e)
+		for k, f := range columns {
+			if u, _ := free.At(f); u >= 0 {
+				j.Set(e, u, values[k])
+			}
+		}
+	}
+	p := mat.NewSymDense(free.N, nil)
+	p.SymOuterK(b.Time.Step*b.Space.Step/(q*q), j.T())
+	for e, term := range free.Terms() {
+		u, _ := free.At(e)
+		_, _, curvature := term.At(0)
+		p.SetSym(u, u, p.At(u, u)+curvature)
+	}
+	for _, row := range free.SoftRows() {
+		a := mat.NewVecDense(free.N, nil)
+		for k, u := range row.Unknown {
+			a.SetVec(int(u), row.Weight[k])
+		}
+		p.SymRankOne(p, row.Precision, a)
+	}
+	var chol mat.Cholesky
+	if !chol.Factorize(p) {
+		t.Fatal("the dense precision is not positive definite")
+	}
+	var sigma mat.SymDense
+	if err := chol.InverseTo(&sigma); err != nil {
+		t.Fatal(err)
+	}
+	at := make([]lattice.Event, free.N)
+	for u := range at {
+		_, _, _, at[u] = free.Event(free.Lead(u))
+	}
+	got, err := r.Posterior(0, at...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for u := range at {
+		for v := range u + 1 {
+			// rounding, condition number about 1e5
+			if d := got.Covariance.At(u, v) - sigma.At(u, v); math.Abs(d) > 1e-11*sigma.At(u, u) {
+				t.Fatalf("covariance of %v and %v: %v, dense formula %v", at[u], at[v], got.Covariance.At(u, v), sigma.At(u, v))
+			}
+		}
+	}
+}
+
 // A string at rest at first and driven by white noise of the strength q has the
 // variance q²t²/4, the noise being collected from the past light cone with the
 // Green function ½ [Walsh 1986, An Introduction to Stochastic Partial Differential

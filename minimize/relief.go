@@ -24,6 +24,17 @@ type groupValue struct {
 	joined    []int   // places in the history, its own among them
 }
 
+// load returns the move of the values by y.
+func (g *group) load(y []float64) load {
+	var l load
+	for i, v := range g.values {
+		for _, m := range v.joined {
+			l.moved = append(l.moved, entry{m, y[i]})
+		}
+	}
+	return l
+}
+
 // holds reports whether the group has a pin; see constraint.Set.Without.
 func (g *group) holds(at lattice.Event, component int, kind string) bool {
 	if kind != g.kind {
@@ -131,22 +142,17 @@ func conditionOf(kind string) (along extent, held bool) {
 
 // rank sorts the reliefs and counts the tie.
 func (v *Verdict) rank(alike float64) {
-	slices.SortStableFunc(v.Reliefs, func(a, b Relief) int { return cmp.Compare(b.saved(), a.saved()) })
-	for from := 0; from < len(v.Reliefs); {
-		to := from + 1
-		for to < len(v.Reliefs) && v.Reliefs[from].saved()-v.Reliefs[to].saved() <= alike*v.Cost {
-			to++
-		}
-		run := v.Reliefs[from:to]
-		slices.SortStableFunc(run, func(a, b Relief) int {
-			return cmp.Or(cmp.Compare(a.Values, b.Values), cmp.Compare(math.Abs(a.Move), math.Abs(b.Move)))
-		})
-		if from == 0 {
-			for v.Tied = 0; v.Tied < len(run) && run[v.Tied].Values == run[0].Values; {
-				v.Tied++
-			}
-		}
-		from = to
+	all := v.Reliefs
+	slices.SortStableFunc(all, func(a, b Relief) int { return cmp.Compare(b.saved(), a.saved()) })
+	run := 0 // reliefs that save as the first does
+	for run < len(all) && all[0].saved()-all[run].saved() <= alike*v.Cost {
+		run++
+	}
+	slices.SortStableFunc(all[:run], func(a, b Relief) int {
+		return cmp.Or(cmp.Compare(a.Values, b.Values), cmp.Compare(math.Abs(a.Move), math.Abs(b.Move)))
+	})
+	for v.Tied = 0; v.Tied < run && all[v.Tied].Values == all[0].Values; {
+		v.Tied++
 	}
 }
 

@@ -32,7 +32,7 @@ type Response struct {
 	found     *Found
 	k         *curvature
 	impulse   float64 // of the force that a source of impulse 1 adds to the gradient; minimum
-	equations map[int]bool
+	equations []bool // values whose row counts; least residual
 }
 
 // NewResponse prepares the responses of a history that LeastResidual, Minimum or
@@ -126,9 +126,9 @@ func (q *Response) least() (cost float64, err error) {
 	if k.rows, err = l.rows(); err != nil {
 		return 0, err
 	}
-	q.equations = make(map[int]bool, len(k.rows))
+	q.equations = make([]bool, len(p.h.Data))
 	for _, e := range k.rows {
-		q.equations[int(e)] = true
+		q.equations[e] = true
 	}
 	k.jac = q.s.ResidualJacobian(nil, p.h)
 	k.weight = p.hk / (p.set.ResidualScale * p.set.ResidualScale)

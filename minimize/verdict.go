@@ -18,12 +18,12 @@ type Verdict struct {
 	Met    bool    // the residual is within the tolerance: nothing needs relaxing
 
 	// Reliefs has every pinned condition that pushes, by at least a millionth of
-	// the largest push, the one that saves most first. Of those that save alike
-	// the one with the fewest values comes first, and then the one that moves
-	// least. Empty if Met.
+	// the largest push, the one that saves most first. Of those that save as much,
+	// within Alike, the one with the fewest values comes first, and then the one
+	// that moves least. Empty if Met.
 	Reliefs []Relief
 
-	// Tied is how many of the first reliefs save alike with equally few values:
+	// Tied is how many of the first reliefs save as much with equally few values:
 	// there is no reason but the moves, and what one knows of the data, to prefer
 	// one of them.
 	Tied int
@@ -71,8 +71,8 @@ type Relaxing struct {
 	// means 3, a negative number none.
 	Confirm int
 
-	// Alike is by which fraction of the cost savings that count as equal may
-	// differ. 0 means 0.01.
+	// Alike is by which fraction of the cost a saving may be below the largest and
+	// still count as equal to it. 0 means 0.01.
 	Alike float64
 }
 
@@ -148,19 +148,18 @@ func (q *Response) relieve(g *group) Relief {
 	}
 	const (
 		most     = 200
-		enough   = 1e-9 // of the saving, by which a step must still raise it
-		straight = 1e-13
+		enough   = 1e-9  // of the saving, by which a step must still raise it
+		rounding = 1e-13 // of the stiffness of a value that moves alone
 	)
 	relief.Partial = n > most
 	for range min(most, n) {
-		image, stiff := q.stiffness(g, along)
-		var curvature, whole float64
+		image := q.stiffness(g, along)
+		var curvature float64
 		for i, a := range along {
 			curvature += a * image[i]
-			whole += a * a * stiff
 		}
-		if !(curvature > straight*whole) { // what is left is rounding
-			relief.Partial = false
+		if !(curvature > rounding*square*q.k.largest) {
+			relief.Partial = false // what is left is noise
 			break
 		}
 		step := square / curvature
@@ -191,23 +190,17 @@ func (q *Response) relieve(g *group) Relief {
 }
 
 // stiffness returns how the multipliers of a group change when its values move by
-// y and the rest of the history follows, and the size of the same if nothing
-// follows, for a move of one value.
-func (q *Response) stiffness(g *group, y []float64) (change []float64, alone float64) {
-	var l load
-	for i, v := range g.values {
-		for _, m := range v.joined {
-			l.moved = append(l.moved, entry{m, y[i]})
-		}
-	}
+// y and the rest of the history follows.
+func (q *Response) stiffness(g *group, y []float64) []float64 {
+	l := g.load(y)
 	gradient := q.k.gradient(l, q.k.solve([]load{l})[0])
-	change = make([]float64, len(y))
+	change := make([]float64, len(y))
 	for i, v := range g.values {
 		for _, m := range v.joined {
 			change[i] += gradient[m]
 		}
 	}
-	return change, q.k.largest
+	return change
 }
 
 // confirm solves again without a condition, from the history that the linear
@@ -217,14 +210,8 @@ func (q *Response) confirm(ctx context.Context, r *Relief) error {
 	if g.fixed {
 		return nil
 	}
-	var l load
-	for i, v := range g.values {
-		for _, m := range v.joined {
-			l.moved = append(l.moved, entry{m, g.move[i]})
-		}
-	}
 	start := field.NewHistory(q.p.h.Block, q.p.h.Components)
-	for e, d := range q.k.solve([]load{l})[0].moved.Data {
+	for e, d := range q.k.solve([]load{g.load(g.move)})[0].moved.Data {
 		start.Data[e] = q.p.h.Data[e] + d
 	}
 	set := q.p.set
@@ -258,7 +245,7 @@ func (v *Verdict) String() string {
 	case v.Tied > 1:
 		fmt.Fprintf(&b, "a tie: giving up any of the first %d saves as much", v.Tied)
 	default:
-		fmt.Fprintf(&b, "the cheapest to give up is the %s at %v", v.Reliefs[0].Kind, v.Reliefs[0].Event)
+		fmt.Fprintf(&b, "the cheapest to give up is the %s at %s", v.Reliefs[0].Kind, place(v.Reliefs[0].Event))
 	}
 	const most = 10
 	for i, r := range v.Reliefs {
@@ -287,5 +274,9 @@ func (r Relief) String() string {
 	if r.Values > 1 {
 		values = fmt.Sprintf("%d values", r.Values)
 	}
-	return fmt.Sprintf("%s at %v, %s: saves %s%.6g%s, moves by up to %.4g at %v", r.Kind, r.Event, values, bound, r.Saving, confirmed, r.Move, r.At)
+	return fmt.Sprintf("%s at %s, %s: saves %s%.6g%s, moves by up to %.4g at %s",
+		r.Kind, place(r.Event), values, bound, r.Saving, confirmed, r.Move, place(r.At))
 }
+
+// place returns an event without the last digits of its coordinates.
+func place(e lattice.Event) string { return fmt.Sprintf("(x, t) = (%.6g, %.6g)", e.X, e.T) }

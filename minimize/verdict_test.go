@@ -67,7 +67,7 @@ func TestVerdictNamesTheWrongPin(t *testing.T) {
 	if r := v.Reliefs[0]; r.Kind != "event" || r.Event != at || r.Values != 1 || r.At != at || math.Abs(r.Move+off) > 1e-8 {
 		t.Errorf("%v; want the event to move by %v", r, -off)
 	}
-	if text := v.String(); !strings.Contains(text, "cheapest to give up is the event at "+at.String()) {
+	if text := v.String(); !strings.Contains(text, "cheapest to give up is the event at (x, t) = (0.4, 1.2)") {
 		t.Error(text)
 	}
 }
