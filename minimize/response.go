@@ -32,7 +32,7 @@ type Response struct {
 	found     *Found
 	k         *curvature
 	impulse   float64 // of the force that a source of impulse 1 adds to the gradient; minimum
-	equations []bool // values whose row counts; least residual
+	equations []bool  // values whose row counts; least residual
 }
 
 // NewResponse prepares the responses of a history that LeastResidual, Minimum or
