@@ -136,6 +136,28 @@
 // explicit steps above theirs an [*Unstable]. There is no silent fall-back: the
 // report names the method.
 //
+// # Response
+//
+// [NewResponse] takes what was found and tells how it depends on what it was
+// found with. [Response.Of] gives the [Influence] of a pinned or observed value,
+// of the number of a linear condition, or of a source at one event on every other
+// event, and [Influence.Shares] how much of it lies outside of a light cone: of a
+// source nothing if Cauchy data are pinned, much if two times are. [Response.Posterior]
+// gives the standard deviation of the field at chosen events and the covariance
+// between them.
+//
+// [Response.Verdict] says which conditions the equation cannot meet together:
+// what each would save of the cost if it were given up, and how far its values
+// would move.
+//
+//	r, err := minimize.NewResponse(s, held, found, nil)
+//	v, err := r.Verdict(ctx, nil)
+//	fmt.Println(v)
+//
+// All are derivatives at the solution, from one factor of the exact second
+// derivative there. They cost about as much as one step of the solve and a
+// solution with the factor for each question.
+//
 // # Size and time
 //
 // Linear systems are factorised exactly by nested dissection of the grid, in
