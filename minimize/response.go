@@ -92,7 +92,7 @@ func NewResponse(f Functional, held *constraint.Set, found *Found, set *Settings
 		}
 		q.s = s
 		cost, err = q.least()
-	case problemMinimum, "stationary", "saddle":
+	case problemMinimum, problemStationary, problemSaddle:
 		q.k.second = f.SecondVariationMatrix(nil, h)
 		cost = f.Value(h)
 		if g, ok := f.(signed); ok && g.Signature() == action.Lorentzian {
@@ -132,6 +132,7 @@ func (q *Response) least() (cost float64, err error) {
 	}
 	k.jac = q.s.ResidualJacobian(nil, p.h)
 	k.weight = p.hk / (p.set.ResidualScale * p.set.ResidualScale)
+	p.unit = k.weight
 	r := q.s.Residual(nil, p.h)
 	k.bent = residualCurvature(q.s, p.h, r, k.rows, k.weight)
 	return l.cost(l.squares(r.Data, k.rows)), nil
