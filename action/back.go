@@ -22,16 +22,21 @@ func (m *March) Back(before, now, next field.Slice, n int) {
 	t := s.block.Time.At(n)
 	kk := s.block.Time.Step * s.block.Time.Step
 	s.wave.Potential.Slope(m.w.slope, now, s.at(t))
+	lo, hi := 0, len(s.xs)
+	if s.HeldLeft() {
+		lo = 1
+	}
+	if s.HeldRight() {
+		hi--
+	}
 	for c := range s.wave.Components {
 		to, at, after := before.Component(c), now.Component(c), next.Component(c)
-		f := m.rhs
+		f := m.w.tmp
 		clear(f)
 		s.addForce(f, m.w, at, m.w.slope.Component(c), c, n, t, 1)
 		rb, ra := s.rhoAround(m.w, c, n)
-		for i, p := range at {
-			if !m.held(i) {
-				to[i] = p + (ra[i]*(p-after[i])+kk/s.u[i]*f[i])/rb[i]
-			}
+		for i := lo; i < hi; i++ {
+			to[i] = at[i] + (ra[i]*(at[i]-after[i])+kk/s.u[i]*f[i])/rb[i]
 		}
 	}
 }
