@@ -97,7 +97,7 @@ func (m *March) Part(next, now, before field.Slice, n, lo, hi int) {
 // cache, with V′ there.
 func (s *Discrete) inStrips(phi field.Slice, t float64, lo, hi int, do func(slope field.Slice, lo, hi int)) {
 	const strip = 1024
-	memory := borrow(s.wave.Components, min(strip, hi-lo))
+	memory := borrow(s.wave.Components, strip)
 	defer memory.giveBack()
 	for ; lo < hi; lo += strip {
 		to := min(lo+strip, hi)

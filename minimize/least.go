@@ -325,10 +325,18 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 		}
 		sum, predicted := l.try(d.lambda)
 		step := Step{Damping: d.lambda / (l.set.ResidualScale * l.set.ResidualScale), Gain: (l.sum - sum) / predicted}
-		if step.Accepted = sum < l.sum; step.Accepted {
+		switch blind := predicted < 1e-12*l.sum; {
+		case blind:
+			if step.Accepted = l.flatter(sum); step.Accepted {
+				step.Gain = 1
+			}
+		case sum < l.sum:
+			step.Accepted = true
 			l.accept(sum)
 			l.linearise()
 			l.measure()
+		}
+		if step.Accepted {
 			d.accepted(step.Gain)
 		} else {
 			d.rejected()
@@ -336,6 +344,23 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 		step.Cost, step.Max = l.rep.CostAfter, l.rep.After.Max
 		l.step(step)
 	}
+}
+
+// flatter makes the trial, whose total is sum, the best history if the gradient
+// of the cost is flatter there. It judges steps where the cost no longer tells
+// histories apart.
+func (l *least) flatter(sum float64) bool {
+	before, total := l.rep.Flat, l.sum
+	l.accept(sum)
+	l.linearise()
+	l.measure()
+	if l.rep.Flat < before {
+		return true
+	}
+	l.accept(total) // which swaps them back
+	l.linearise()
+	l.measure()
+	return false
 }
 
 // solved reports whether the history is a solution, and why.
