@@ -96,7 +96,7 @@ func (m *March) Part(next, now, before field.Slice, n, lo, hi int) {
 // inStrips calls do for strips of the sites from lo to hi−1 that fit the nearest
 // cache, with V′ there.
 func (s *Discrete) inStrips(phi field.Slice, t float64, lo, hi int, do func(slope field.Slice, lo, hi int)) {
-	const strip = 1024
+	strip := max(128, 2048/s.wave.Components) // 16 kB of slopes
 	memory := borrow(s.wave.Components, strip)
 	defer memory.giveBack()
 	for ; lo < hi; lo += strip {
