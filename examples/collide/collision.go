@@ -21,7 +21,8 @@ type collision struct {
 	until   float64 // the watch time, counted from the start
 	window  float64 // the exit speed is fitted to this last part of the time
 	stop    stop
-	picture float64 // time between recorded slices; 0 records nothing
+	picture float64          // time between recorded slices; 0 records nothing
+	probe   *integrate.Probe // of the middle, if not nil
 }
 
 // stop says what ends a run before its time.
@@ -36,6 +37,7 @@ type flight struct {
 	met     []float64     // times of the looks at which they had merged
 	exit    track.Line    // fit to the partner on the right over the window
 	outcome track.Outcome // Capture if it had not escaped when the run ended
+	path    *track.Path   // of the partner on the right
 	history *field.History
 }
 
@@ -89,6 +91,9 @@ func (c collision) run(ctx context.Context) (*flight, error) {
 			return nil, err
 		}
 		set := integrate.Settings{Method: integrate.Yoshida4{}, Every: -1, Observers: []integrate.Observer{w}}
+		if c.probe != nil {
+			set.Observers = append(set.Observers, c.probe)
+		}
 		if c.picture > 0 {
 			set.Every = max(1, int(c.picture/k))
 		}
@@ -140,12 +145,11 @@ func (c collision) fit(s field.State, line lattice.Axis) field.State {
 // watch is the observer of a collision.
 type watch struct {
 	collision
-	kinks   track.Kinks
-	flight  flight
-	density []float64
-	last    float64 // time of the last look
-	next    float64 // time of the next judgement
-	done    bool
+	kinks  track.Kinks
+	flight flight
+	last   float64 // time of the last look
+	next   float64 // time of the next judgement
+	done   bool
 }
 
 // Stride makes a look every quarter of a unit of time.
@@ -186,7 +190,7 @@ func (w *watch) settled(m *integrate.Moment) bool {
 	if w.stop.escape && w.fate(2*steady) == track.Escape {
 		return true
 	}
-	if !w.stop.capture {
+	if !w.stop.capture || len(w.partner().Merged) < 3 { // two are worth knowing exactly
 		return false
 	}
 	// The pair inside, radiation outside: twice the energy of the half line.
@@ -194,8 +198,8 @@ func (w *watch) settled(m *integrate.Moment) bool {
 	if _, x := w.partner().Last(); x > inside-5/w.bond.Decay {
 		return false
 	}
-	w.density = m.Action.EnergyDensity(w.density[:0], m.State(), m.Time)
-	energy := 2 * track.Content(m.Action.Block().Space, w.density, 0, inside)
+	density := m.Action.EnergyDensity(nil, m.State(), m.Time)
+	energy := 2 * track.Content(m.Action.Block().Space, density, 0, inside)
 	return w.bond.Spent(energy, margin) == track.Capture
 }
 
@@ -230,7 +234,8 @@ func (w *watch) fate(window float64) track.Outcome {
 // captured.
 func (w *watch) result() *flight {
 	f := &w.flight
-	f.met = w.partner().Merged
+	f.path = w.partner()
+	f.met = f.path.Merged
 	f.outcome = track.Capture
 	if len(f.met) > 0 && w.fate(w.window) == track.Escape {
 		f.outcome = track.Escape
