@@ -74,14 +74,12 @@ func (c collision) run(ctx context.Context) (*flight, error) {
 	if c.picture > 0 {
 		stretch = steps
 	}
-	line := c.line(0, float64(min(stretch, steps))*k)
-	state := profile.On(line, 0)
+	state := profile.On(c.line(0, float64(min(stretch, steps))*k), 0)
 	for n := 0; n < steps && !w.done; n += stretch {
 		length := min(stretch, steps-n)
 		from := float64(n) * k
-		next := c.line(from, from+float64(length)*k)
-		state = c.fit(state, next)
-		line = next
+		line := c.line(from, from+float64(length)*k)
+		state = c.fit(state, line)
 		block, err := lattice.NewBlock(lattice.Axis{From: from, Step: k, Sites: length + 1}, line)
 		if err != nil {
 			return nil, err

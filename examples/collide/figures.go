@@ -76,23 +76,19 @@ func unfold(h *field.History, reach float64) *field.History {
 
 // drawScan writes the speed after, and the number of collisions, against the
 // speed before.
-func (j job) drawScan(t store.Table, ws []interval) error {
+func (j job) drawScan(t store.Table) error {
 	v, _ := t.Column("speed")
 	exit, _ := t.Column("exit_speed")
 	bounces, _ := t.Column("bounces")
-	marks := figure.Curve{Label: "two-bounce windows"}
-	var highest float64
+	highest := 0.01
 	for _, e := range exit {
 		highest = max(highest, e)
 	}
-	for _, w := range ws {
-		marks.X = append(marks.X, w.low, w.high, math.NaN())
-		marks.Y = append(marks.Y, -0.03*highest, -0.03*highest, math.NaN())
-	}
 	err := j.save(figure.Profile{
-		Curves: []figure.Curve{{X: v, Y: exit, Label: "exit speed, 0 if captured"}, marks},
+		Curves: withWindows(figure.Curve{X: v, Y: exit, Label: "exit speed, 0 if captured"}, bounces, -0.05*highest, -0.03*highest),
 		Title:  fmt.Sprintf("%s: speed after the last collision, t = %g", j.pair.title, j.watch),
 		XLabel: "initial speed (c)", ValueLabel: "exit speed (c)",
+		Low: -0.1 * highest, High: 1.1 * highest,
 	}, "scan.png")
 	if err != nil {
 		return err
@@ -102,14 +98,28 @@ func (j job) drawScan(t store.Table, ws []interval) error {
 	for k, b := range bounces {
 		count[k] = min(b, most)
 	}
-	for k := range marks.Y {
-		marks.Y[k] = 2.15
-	}
 	return j.save(figure.Profile{
-		Curves: []figure.Curve{{X: v, Y: count, Label: fmt.Sprintf("collisions, %d standing for more", most)}, marks},
+		Curves: withWindows(figure.Curve{X: v, Y: count, Label: fmt.Sprintf("collisions, %d standing for more", most)}, bounces, 0.3, 0.44),
 		Title:  fmt.Sprintf("%s: collisions until t = %g", j.pair.title, j.watch),
-		XLabel: "initial speed (c)", ValueLabel: "collisions", Low: 0, High: most + 1,
+		XLabel: "initial speed (c)", ValueLabel: "collisions", Low: 0, High: most + 0.5,
 	}, "bounces.png")
+}
+
+// withWindows returns a curve over the speeds and, if there are any with two
+// collisions, a short upright line at each. They are shorter than a dash, and so
+// are drawn whole.
+func withWindows(c figure.Curve, bounces []float64, low, high float64) []figure.Curve {
+	ticks := figure.Curve{Label: "two-bounce windows"}
+	for k, b := range bounces {
+		if v := c.X[k]; b == 2 {
+			ticks.X = append(ticks.X, v, v, math.NaN())
+			ticks.Y = append(ticks.Y, low, high, math.NaN())
+		}
+	}
+	if len(ticks.X) == 0 {
+		return []figure.Curve{c}
+	}
+	return []figure.Curve{c, ticks}
 }
 
 func (j job) save(f interface{ Save(string) error }, name string) error {

@@ -81,7 +81,7 @@ func main() {
 	flag.BoolVar(&j.critical, "critical", false, "find the critical speed")
 	flag.Float64Var(&j.watch, "watch", 0, "watch `time` of -scan (500 unless given) and -critical (400)")
 	flag.Float64Var(&j.spacing, "spacing", 0.2, "spacing of the coarsest lattice, which is that of a scan")
-	flag.Float64Var(&j.step, "step", 0, "its time step; a quarter of the spacing unless given")
+	flag.Float64Var(&j.step, "step", 0, "its time step; a quarter of the spacing unless given, in a scan a sixth")
 	quick := flag.Bool("quick", false, "one collision on coarse lattices, to see that it works")
 	flag.StringVar(&j.out, "out", "collide-out", "folder for results.json, tables and figures")
 	flag.Parse()
@@ -140,15 +140,12 @@ func (j *job) complete() (err error) {
 	if j.speed == 0 && j.speeds.n == 0 && !j.critical {
 		j.speed = 0.3
 	}
-	if j.step == 0 {
-		j.step = 0.25 * j.spacing
-	}
 	switch {
 	case !(j.speed >= 0 && j.speed < 1):
 		return fmt.Errorf("-speed %g; want a number between 0 and 1, in units of the wave speed", j.speed)
 	case !(j.spacing > 0 && j.spacing <= 0.5):
 		return fmt.Errorf("-spacing %g; want a number above 0 and at most 0.5, half the width of a kink", j.spacing)
-	case !(j.step > 0 && j.step <= 0.6*j.spacing):
+	case !(j.step >= 0 && j.step <= 0.6*j.spacing):
 		return fmt.Errorf("-step %g; want a number above 0 and at most 0.6 of the spacing, for the method to be stable", j.step)
 	case !(j.watch >= 0) || math.IsInf(j.watch, 0):
 		return fmt.Errorf("-watch %g; want a finite time", j.watch)
@@ -156,9 +153,19 @@ func (j *job) complete() (err error) {
 	return nil
 }
 
+// stepOr returns the time step, or the given share of the spacing if none was
+// asked for.
+func (j job) stepOr(share float64) float64 {
+	if j.step > 0 {
+		return j.step
+	}
+	return share * j.spacing
+}
+
 // one runs a collision on three lattices.
 func (j job) one(ctx context.Context) ([]refine.Result, error) {
 	const window = 60
+	j.step = j.stepOr(1. / 4)
 	c := collision{pair: j.pair, speed: j.speed, until: j.pair.separation/j.speed + 150, window: window}
 	steps := int(math.Ceil(c.until / j.step))
 	block, err := lattice.NewBlock(
@@ -169,7 +176,8 @@ func (j job) one(ctx context.Context) ([]refine.Result, error) {
 		return nil, err
 	}
 	var last *flight
-	table, err := refine.Study{Block: block, Order: 4}.Run(ctx, func(ctx context.Context, b lattice.Block) ([]refine.Quantity, error) {
+	// Time is of order 4 and space of order 6; either may lead.
+	table, err := refine.Study{Block: block}.Run(ctx, func(ctx context.Context, b lattice.Block) ([]refine.Quantity, error) {
 		c := c
 		c.spacing, c.step = b.Space.Step, b.Time.Step
 		last, err = c.run(ctx)
@@ -219,6 +227,8 @@ func (j job) campaign(ctx context.Context) ([]refine.Result, error) {
 	if j.watch == 0 {
 		j.watch = 500
 	}
+	// One lattice must do, so its error in time is brought down to that in space.
+	j.step = j.stepOr(1. / 6)
 	table, err := j.scan(ctx)
 	if err != nil {
 		return nil, err
@@ -226,9 +236,9 @@ func (j job) campaign(ctx context.Context) ([]refine.Result, error) {
 	ws := j.windows(table)
 	fmt.Printf("\n%d speeds from %g to %g, watched until t = %g; %d two-bounce windows:\n", j.speeds.n, j.speeds.from, j.speeds.to, j.watch, len(ws))
 	for _, w := range ws {
-		fmt.Printf("  %.6f to %.6f   exit speed %.5f at %.6f\n", w.low, w.high, w.exit, w.centre)
+		fmt.Printf("  %.6f to %.6f   %s\n", w.low, w.high, w.end())
 	}
-	if err := j.drawScan(table, ws); err != nil {
+	if err := j.drawScan(table); err != nil {
 		return nil, err
 	}
 	shown := 0.5 * (j.speeds.from + j.speeds.to)
@@ -248,6 +258,7 @@ func (j job) threshold(ctx context.Context) ([]refine.Result, error) {
 	if j.watch == 0 {
 		j.watch = 400
 	}
+	j.step = j.stepOr(1. / 4)
 	fmt.Printf("\nCritical speed, watched until t = %g:\n", j.watch)
 	s := &critical{pair: j.pair, watch: j.watch, tell: func(format string, args ...any) { fmt.Printf(format, args...) }}
 	table, err := s.study(ctx, j.spacing, j.step)

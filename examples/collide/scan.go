@@ -94,6 +94,14 @@ type interval struct {
 	centre, exit    float64 // the speed nearest to the middle, and its exit speed
 }
 
+// end says in words how the pair ends in the middle of the window.
+func (w interval) end() string {
+	if w.exit == 0 {
+		return fmt.Sprintf("not parted yet at %.6f", w.centre)
+	}
+	return fmt.Sprintf("exit speed %.5f at %.6f", w.exit, w.centre)
+}
+
 // windows returns the two-bounce windows of a scan.
 func (j job) windows(t store.Table) []interval {
 	speed, _ := t.Column("speed")

@@ -48,7 +48,7 @@ type Sweep struct {
 // lines of progress.
 const (
 	saveEvery = 5 * time.Second
-	tellEvery = 500 * time.Millisecond
+	tellEvery = 2 * time.Second
 )
 
 // Run measures at every point and returns the table of parameters and results, a
