@@ -15,8 +15,9 @@ import (
 // for methods that step inside a time link. It has working memory, serves one
 // goroutine at a time and allocates nothing after it is made.
 type Accelerator struct {
-	s *Discrete
-	w *scratch
+	s      *Discrete
+	w      *scratch
+	chains []*chain // nil with β
 }
 
 // Accelerator returns an accelerator, or an error if the density is Euclidean
@@ -28,20 +29,48 @@ func (s *Discrete) Accelerator() (*Accelerator, error) {
 	if err := s.BetweenSlices(); err != nil {
 		return nil, err
 	}
-	return &Accelerator{s: s, w: s.newScratch()}, nil
+	perRho := func(before, _, loss float64) (keep, den float64) { return -loss, before }
+	a := &Accelerator{s: s, w: s.newScratch(), chains: s.newChains(perRho, false)}
+	a.refresh(s.block.Time.From)
+	return a, nil
+}
+
+func (a *Accelerator) refresh(t float64) {
+	for _, ch := range a.chains {
+		ch.refresh(a.w, 0, t)
+	}
 }
 
 // At writes φ_tt of the state at time t to dst. It is zero at held and odd ends.
 func (a *Accelerator) At(dst field.Slice, st field.State, t float64) {
+	s := a.s
+	if a.chains == nil {
+		a.viscous(dst, st, t)
+		return
+	}
+	a.refresh(t)
+	if a.chains[0].given {
+		s.inStrips(st.Field, t, 0, len(s.xs), func(slope field.Slice, lo, hi int) {
+			for c, ch := range a.chains {
+				ch.accelerate(dst.Component(c), st.Field.Component(c), st.Rate.Component(c), slope.Component(c), lo, hi)
+			}
+		})
+		return
+	}
+	for c, ch := range a.chains {
+		ch.accelerate(dst.Component(c), st.Field.Component(c), st.Rate.Component(c), nil, 0, len(s.xs))
+	}
+}
+
+// viscous is At with a loss β.
+func (a *Accelerator) viscous(dst field.Slice, st field.State, t float64) {
 	s := a.s
 	s.wave.Potential.Slope(a.w.slope, st.Field, s.at(t))
 	for c := range s.wave.Components {
 		d := dst.Component(c)
 		clear(d)
 		s.addForce(d, a.w, st.Field.Component(c), a.w.slope.Component(c), c, 0, t, 1)
-		if s.lossy() != "" {
-			s.addLoss(d, a.w, st.Rate.Component(c), c, 0, t, 1)
-		}
+		s.addLoss(d, a.w, st.Rate.Component(c), c, 0, t, 1)
 		for i, r := range s.rho.row(a.w.rb, c, 0, t) {
 			d[i] /= s.u[i] * r
 		}

@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"github.com/tenter-go/tenter/field"
+	"github.com/tenter-go/tenter/internal/kernel"
 )
 
 // Mass is the quadratic potential V = ½m²φ² of the Klein–Gordon equation.
@@ -59,157 +60,164 @@ func (d DoubleSineGordon) VacuumSpacing() float64 {
 	return 4 * math.Pi
 }
 
+// A catalogued potential of one component has loops in package kernel.
+type catalogued interface {
+	// inKernel returns the potential as the loops know it, or reports false if
+	// they do not.
+	inKernel() (kernel.Potential, bool)
+}
+
+func (m Mass) inKernel() (kernel.Potential, bool) {
+	return kernel.Quadratic(float64(m * m)), true
+}
+func (c Polynomial) inKernel() (kernel.Potential, bool) { return kernel.Polynomial(c) }
+func (Phi4) inKernel() (kernel.Potential, bool)         { return kernel.Phi4(), true }
+func (Phi6) inKernel() (kernel.Potential, bool)         { return kernel.Phi6(), true }
+func (SineGordon) inKernel() (kernel.Potential, bool)   { return kernel.Sine(), true }
+func (d DoubleSineGordon) inKernel() (kernel.Potential, bool) {
+	return kernel.DoubleSine(d.Eta), true
+}
+func (none) inKernel() (kernel.Potential, bool)   { return kernel.Potential{}, true }
+func (e Each) inKernel() (kernel.Potential, bool) { return inKernel(e.Potential) }
+
+// inKernel returns a potential that is the same function of each component and
+// couples none, as the loops know it.
+func inKernel(p Potential) (kernel.Potential, bool) {
+	if c, ok := p.(catalogued); ok {
+		return c.inKernel()
+	}
+	return kernel.Potential{}, false
+}
+
 // Value implements Potential.
 func (m Mass) Value(dst []float64, phi field.Slice, _ Sites) {
-	c := 0.5 * float64(m) * float64(m)
-	for i, p := range phi.Component(0) {
-		dst[i] = c * p * p
-	}
+	k, _ := m.inKernel()
+	k.Value(dst, phi.Component(0))
 }
 
 // Slope implements Potential.
 func (m Mass) Slope(dst, phi field.Slice, _ Sites) {
-	c, d := float64(m)*float64(m), dst.Component(0)
-	for i, p := range phi.Component(0) {
-		d[i] = c * p
-	}
+	k, _ := m.inKernel()
+	k.Slope(dst.Component(0), phi.Component(0))
 }
 
 // Curvature implements Potential.
 func (m Mass) Curvature(dst, phi field.Slice, _ Sites) {
-	Uniform(m*m).sample(dst.Component(0), 0, nil, 0, 0)
+	k, _ := m.inKernel()
+	k.Curvature(dst.Component(0), phi.Component(0))
 }
 
 // Value implements Potential, by Horner's rule.
 func (c Polynomial) Value(dst []float64, phi field.Slice, _ Sites) {
-	for i, p := range phi.Component(0) {
+	if k, ok := c.inKernel(); ok {
+		k.Value(dst, phi.Component(0))
+		return
+	}
+	c.horner(dst, phi.Component(0), 0)
+}
+
+// Slope implements Potential.
+func (c Polynomial) Slope(dst, phi field.Slice, _ Sites) {
+	if k, ok := c.inKernel(); ok {
+		k.Slope(dst.Component(0), phi.Component(0))
+		return
+	}
+	c.horner(dst.Component(0), phi.Component(0), 1)
+}
+
+// Curvature implements Potential.
+func (c Polynomial) Curvature(dst, phi field.Slice, _ Sites) {
+	if k, ok := c.inKernel(); ok {
+		k.Curvature(dst.Component(0), phi.Component(0))
+		return
+	}
+	c.horner(dst.Component(0), phi.Component(0), 2)
+}
+
+// horner writes a derivative of a degree too high for the loops to dst.
+func (c Polynomial) horner(dst, phi []float64, derivative int) {
+	for i, p := range phi {
 		var v float64
-		for k := len(c) - 1; k >= 0; k-- {
-			v = v*p + c[k]
+		for k := len(c) - 1; k >= derivative; k-- {
+			w := c[k]
+			for j := range derivative {
+				w *= float64(k - j)
+			}
+			v = math.FMA(v, p, w)
 		}
 		dst[i] = v
 	}
 }
 
+// Value implements Potential.
+func (p Phi4) Value(dst []float64, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Value(dst, phi.Component(0))
+}
+
 // Slope implements Potential.
-func (c Polynomial) Slope(dst, phi field.Slice, _ Sites) {
-	d := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		var v float64
-		for k := len(c) - 1; k >= 1; k-- {
-			v = v*p + float64(k)*c[k]
-		}
-		d[i] = v
-	}
+func (p Phi4) Slope(dst, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Slope(dst.Component(0), phi.Component(0))
 }
 
 // Curvature implements Potential.
-func (c Polynomial) Curvature(dst, phi field.Slice, _ Sites) {
-	d := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		var v float64
-		for k := len(c) - 1; k >= 2; k-- {
-			v = v*p + float64(k*(k-1))*c[k]
-		}
-		d[i] = v
-	}
+func (p Phi4) Curvature(dst, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Curvature(dst.Component(0), phi.Component(0))
 }
 
 // Value implements Potential.
-func (Phi4) Value(dst []float64, phi field.Slice, _ Sites) {
-	for i, p := range phi.Component(0) {
-		w := 1 - p*p
-		dst[i] = 0.25 * w * w
-	}
+func (p Phi6) Value(dst []float64, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Value(dst, phi.Component(0))
 }
 
 // Slope implements Potential.
-func (Phi4) Slope(dst, phi field.Slice, _ Sites) {
-	d := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		d[i] = p * (p*p - 1)
-	}
+func (p Phi6) Slope(dst, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Slope(dst.Component(0), phi.Component(0))
 }
 
 // Curvature implements Potential.
-func (Phi4) Curvature(dst, phi field.Slice, _ Sites) {
-	d := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		d[i] = 3*p*p - 1
-	}
+func (p Phi6) Curvature(dst, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Curvature(dst.Component(0), phi.Component(0))
 }
 
-// Value implements Potential.
-func (Phi6) Value(dst []float64, phi field.Slice, _ Sites) {
-	for i, p := range phi.Component(0) {
-		w := p * (1 - p*p)
-		dst[i] = 0.5 * w * w
-	}
-}
-
-// Slope implements Potential.
-func (Phi6) Slope(dst, phi field.Slice, _ Sites) {
-	d := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		q := p * p
-		d[i] = p * (1 - q) * (1 - 3*q)
-	}
-}
-
-// Curvature implements Potential.
-func (Phi6) Curvature(dst, phi field.Slice, _ Sites) {
-	d := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		q := p * p
-		d[i] = 1 - 12*q + 15*q*q
-	}
-}
-
-// Value implements Potential. It is written 2 sin²½φ, which keeps its digits
+// Value implements Potential. It is found as 2 sin²½φ, which keeps its digits
 // near the vacua.
-func (SineGordon) Value(dst []float64, phi field.Slice, _ Sites) {
-	for i, p := range phi.Component(0) {
-		s := math.Sin(0.5 * p)
-		dst[i] = 2 * s * s
-	}
+func (p SineGordon) Value(dst []float64, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Value(dst, phi.Component(0))
 }
 
 // Slope implements Potential.
-func (SineGordon) Slope(dst, phi field.Slice, _ Sites) {
-	d := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		d[i] = math.Sin(p)
-	}
+func (p SineGordon) Slope(dst, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Slope(dst.Component(0), phi.Component(0))
 }
 
 // Curvature implements Potential.
-func (SineGordon) Curvature(dst, phi field.Slice, _ Sites) {
-	d := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		d[i] = math.Cos(p)
-	}
+func (p SineGordon) Curvature(dst, phi field.Slice, _ Sites) {
+	k, _ := p.inKernel()
+	k.Curvature(dst.Component(0), phi.Component(0))
 }
 
 // Value implements Potential.
 func (d DoubleSineGordon) Value(dst []float64, phi field.Slice, _ Sites) {
-	for i, p := range phi.Component(0) {
-		s, q := math.Sin(0.5*p), math.Sin(0.25*p)
-		dst[i] = 2*s*s + d.Eta*2*q*q
-	}
+	k, _ := d.inKernel()
+	k.Value(dst, phi.Component(0))
 }
 
 // Slope implements Potential.
 func (d DoubleSineGordon) Slope(dst, phi field.Slice, _ Sites) {
-	v := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		v[i] = math.Sin(p) + 0.5*d.Eta*math.Sin(0.5*p)
-	}
+	k, _ := d.inKernel()
+	k.Slope(dst.Component(0), phi.Component(0))
 }
 
 // Curvature implements Potential.
 func (d DoubleSineGordon) Curvature(dst, phi field.Slice, _ Sites) {
-	v := dst.Component(0)
-	for i, p := range phi.Component(0) {
-		v[i] = math.Cos(p) + 0.25*d.Eta*math.Cos(0.5*p)
-	}
+	k, _ := d.inKernel()
+	k.Curvature(dst.Component(0), phi.Component(0))
 }

@@ -3,6 +3,7 @@ package action
 import (
 	"fmt"
 	"math"
+	"sync"
 
 	"github.com/tenter-go/tenter/field"
 	"github.com/tenter-go/tenter/lattice"
@@ -25,10 +26,15 @@ type Discrete struct {
 	rho, kappa, sigma, source, alpha, beta *track
 	kappaSites                             *track // κ on sites; nil if averaged or not needed
 	flux                                   [2]*track
+
+	idle sync.Pool // of *scratch, for sums that are asked for again and again
 }
 
 // Block returns the block.
 func (s *Discrete) Block() lattice.Block { return s.block }
+
+// Radius returns how many sites the force on a site looks to each side.
+func (s *Discrete) Radius() int { return s.elastic.radius }
 
 // Components returns the number of components.
 func (s *Discrete) Components() int { return s.wave.Components }
@@ -65,6 +71,16 @@ func (s *Discrete) newScratch() *scratch {
 		kl: row(), ks: row(), rb: row(), ra: row(), sigma: row(), src: row(), al: row(), be: row(), tmp: row(),
 	}
 }
+
+// borrow returns working memory that nobody else uses until it is given back.
+func (s *Discrete) borrow() *scratch {
+	if w, ok := s.idle.Get().(*scratch); ok {
+		return w
+	}
+	return s.newScratch()
+}
+
+func (s *Discrete) giveBack(w *scratch) { s.idle.Put(w) }
 
 // at returns where and when slice values stand, for a Potential.
 func (s *Discrete) at(t float64) Sites { return Sites{T: t, X: s.xs} }
@@ -132,10 +148,10 @@ func (s *Discrete) addForce(dst []float64, w *scratch, phi, slope []float64, c, 
 	sigma, src := s.sigma.row(w.sigma, c, n, t), s.source.row(w.src, c, n, t)
 	last := len(dst) - 1
 	for i := 1; i < last; i++ {
-		dst[i] += scale * (src[i] - sigma[i]*slope[i])
+		dst[i] += float64(scale * (src[i] - float64(sigma[i]*slope[i])))
 	}
 	for _, i := range [2]int{0, last} {
-		dst[i] += scale * s.u[i] * (src[i] - sigma[i]*slope[i])
+		dst[i] += float64(scale * s.u[i] * (src[i] - float64(sigma[i]*slope[i])))
 	}
 	s.addFlux(dst, w, c, n, t, scale)
 }
@@ -149,7 +165,7 @@ func (s *Discrete) addFlux(dst []float64, w *scratch, c, n int, t, scale float64
 	last := len(dst) - 1
 	left, right := s.fluxAt(w, c, n, t)
 	for j, g := range s.elastic.flux[0] {
-		dst[j] -= scale * g * left / h
+		dst[j] -= float64(scale*g*left) / h
 	}
 	for j, g := range s.elastic.flux[1] {
 		dst[last-j] += scale * g * right / h

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 
+	"github.com/tenter-go/tenter/internal/kernel"
 	"github.com/tenter-go/tenter/lattice"
 )
 
@@ -172,9 +173,9 @@ func (e *elastic) tension(g edge, phi []float64, k stiffness, jump float64) floa
 }
 
 func (e *elastic) stretch(g edge, phi []float64, jump float64) float64 {
-	s := g.coef[0]*phi[e.on(g.site[0])] + g.coef[1]*phi[e.on(g.site[1])] + g.jump*jump
+	s := float64(g.coef[0]*phi[e.on(g.site[0])]) + float64(g.coef[1]*phi[e.on(g.site[1])]) + float64(g.jump*jump)
 	if g.coef[2] != 0 {
-		s += g.coef[2] * phi[g.site[2]]
+		s += float64(g.coef[2] * phi[g.site[2]])
 	}
 	return s
 }
@@ -198,7 +199,7 @@ func (e *elastic) addForce(dst, phi []float64, k stiffness, jump, scale float64)
 		if d == 1 {
 			var before float64
 			for i, p := range near {
-				t := w * kd[i] * (far[i] - p)
+				t := float64(w * kd[i] * (far[i] - p))
 				from[i] += t - before
 				before = t
 			}
@@ -206,17 +207,17 @@ func (e *elastic) addForce(dst, phi []float64, k stiffness, jump, scale float64)
 			continue
 		}
 		for i, p := range near {
-			t := w * kd[i] * (far[i] - p)
+			t := float64(w * kd[i] * (far[i] - p))
 			from[i] += t
 			to[i] -= t
 		}
 	}
 	for _, g := range e.edges {
 		t := scale * e.tension(g, phi, k, jump)
-		dst[e.on(g.site[0])] -= t * g.coef[0]
-		dst[e.on(g.site[1])] -= t * g.coef[1]
+		dst[e.on(g.site[0])] -= float64(t * g.coef[0])
+		dst[e.on(g.site[1])] -= float64(t * g.coef[1])
 		if g.coef[2] != 0 {
-			dst[g.site[2]] -= t * g.coef[2]
+			dst[g.site[2]] -= float64(t * g.coef[2])
 		}
 	}
 }
@@ -226,15 +227,11 @@ func (e *elastic) energy(phi []float64, k stiffness, jump float64) float64 {
 	var sum float64
 	for d := 1; d <= e.radius; d++ {
 		kd := k.along(d)
-		var part float64
-		for i := range len(phi) - d {
-			s := phi[i+d] - phi[i]
-			part += kd[i] * s * s
-		}
-		sum += 0.5 * e.w[d-1] * part
+		n := len(phi) - d
+		sum += float64(0.5 * e.w[d-1] * kernel.WeightedDistance(kd[:n], phi[:n], phi[d:]))
 	}
 	for _, g := range e.edges {
-		sum += 0.5 * e.tension(g, phi, k, jump) * e.stretch(g, phi, jump)
+		sum += float64(0.5 * e.tension(g, phi, k, jump) * e.stretch(g, phi, jump))
 	}
 	return sum
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 
 	"github.com/tenter-go/tenter/field"
+	"github.com/tenter-go/tenter/internal/kernel"
 	"github.com/tenter-go/tenter/lattice"
 )
 
@@ -29,25 +30,37 @@ func (e Energy) Total() float64 { return e.Field() + e.Source }
 // rate of slice n is (φ(n+1) − φ(n−1))/2k, and the energy then oscillates by
 // O(k²) around a conserved value.
 func (s *Discrete) Energy(st field.State, t float64) Energy {
-	w := s.newScratch()
+	w := s.borrow()
+	defer s.giveBack(w)
 	line, n := s.block.Space, s.rowAt(t)
+	last := len(s.xs) - 1
 	var e Energy
 	v := w.tmp
 	s.wave.Potential.Value(v, st.Field, s.at(t))
-	for i, sigma := range s.sigma.row(w.sigma, 0, n, t) {
-		e.Potential += s.u[i] * sigma * v[i]
-	}
+	v[0] *= s.u[0]
+	v[last] *= s.u[last]
+	e.Potential = kernel.Dot(s.sigma.row(w.sigma, 0, n, t), v)
 	for c := range s.wave.Components {
 		phi := st.Field.Component(c)
-		for i, r := range s.rhoAt(w, c, n, t) {
-			q := st.Rate.Component(c)[i]
-			e.Kinetic += 0.5 * s.u[i] * r * q * q
-		}
+		e.Kinetic += float64(0.5 * s.weightedSquares(s.rhoAt(w, c, n, t), st.Rate.Component(c)))
 		e.Elastic += s.elastic.energy(phi, s.kappaAt(w, c, n, t), line.JumpOf(c))
 		e.Source += s.sourceEnergy(w, phi, c, n, t)
 	}
 	h := line.Step
 	return Energy{Kinetic: h * e.Kinetic, Elastic: h * e.Elastic, Potential: h * e.Potential, Source: h * e.Source}
+}
+
+// weightedSquares returns Σ uwv².
+func (s *Discrete) weightedSquares(w, v []float64) float64 {
+	last := len(v) - 1
+	inside := kernel.WeightedSquares(w[1:last], v[1:last])
+	return inside + (float64(s.u[0]*w[0]*v[0]*v[0]) + float64(s.u[last]*w[last]*v[last]*v[last]))
+}
+
+// weightedProduct returns Σ uwv.
+func (s *Discrete) weightedProduct(w, v []float64) float64 {
+	last := len(v) - 1
+	return kernel.Dot(w[1:last], v[1:last]) + (float64(s.u[0]*w[0]*v[0]) + float64(s.u[last]*w[last]*v[last]))
 }
 
 // EnergyDensity writes the energy of the field per length at each site to dst,
@@ -56,7 +69,8 @@ func (s *Discrete) Energy(st field.State, t float64) Energy {
 // Energy.Field().
 func (s *Discrete) EnergyDensity(dst []float64, st field.State, t float64) []float64 {
 	dst = s.fitRow(dst, len(s.xs))
-	w := s.newScratch()
+	w := s.borrow()
+	defer s.giveBack(w)
 	line, n := s.block.Space, s.rowAt(t)
 	clear(dst)
 	for c := range s.wave.Components {
@@ -86,7 +100,8 @@ func (s *Discrete) EnergyDensity(dst []float64, st field.State, t float64) []flo
 func (s *Discrete) EnergyFlux(dst []float64, st field.State, t float64) []float64 {
 	line, n := s.block.Space, s.rowAt(t)
 	dst = s.fitRow(dst, line.Links())
-	w := s.newScratch()
+	w := s.borrow()
+	defer s.giveBack(w)
 	clear(dst)
 	for c := range s.wave.Components {
 		s.elastic.power(dst, st.Field.Component(c), st.Rate.Component(c), s.kappaAt(w, c, n, t), line.JumpOf(c))
@@ -99,9 +114,20 @@ func (s *Discrete) EnergyFlux(dst []float64, st field.State, t float64) []float6
 
 // Momentum returns P = −∫ρφ_tφ_x, with φ_x as in MomentumDensity.
 func (s *Discrete) Momentum(st field.State, t float64) float64 {
+	w := s.borrow()
+	defer s.giveBack(w)
 	var sum float64
-	for i, p := range s.MomentumDensity(nil, st, t) {
-		sum += s.u[i] * p
+	for c := range s.wave.Components {
+		rate := st.Rate.Component(c)
+		rho := s.momentumSlope(w, st, c, t)
+		if v, ok := s.rho.coef.uniform(c); ok {
+			sum -= float64(v * s.weightedProduct(rate, w.tmp))
+			continue
+		}
+		for i, r := range rho {
+			w.tmp[i] *= r
+		}
+		sum -= s.weightedProduct(rate, w.tmp)
 	}
 	return sum * s.block.Space.Step
 }
@@ -112,21 +138,28 @@ func (s *Discrete) Momentum(st field.State, t float64) float64 {
 // order only.
 func (s *Discrete) MomentumDensity(dst []float64, st field.State, t float64) []float64 {
 	dst = s.fitRow(dst, len(s.xs))
-	w := s.newScratch()
-	line, n := s.block.Space, s.rowAt(t)
+	w := s.borrow()
+	defer s.giveBack(w)
 	clear(dst)
 	for c := range s.wave.Components {
-		var stretch [2]float64
-		if !line.Periodic {
-			stretch = s.endSlopes(w, st.Rate.Component(c), c, n, t)
-		}
-		s.elastic.slope(w.tmp, st.Field.Component(c), line.JumpOf(c), stretch)
 		rate := st.Rate.Component(c)
-		for i, r := range s.rhoAt(w, c, n, t) {
-			dst[i] -= r * rate[i] * w.tmp[i]
+		for i, r := range s.momentumSlope(w, st, c, t) {
+			dst[i] -= float64(r * rate[i] * w.tmp[i])
 		}
 	}
 	return dst
+}
+
+// momentumSlope writes φ_x of component c, as the momentum has it, to w.tmp and
+// returns ρ.
+func (s *Discrete) momentumSlope(w *scratch, st field.State, c int, t float64) (rho []float64) {
+	line, n := s.block.Space, s.rowAt(t)
+	var stretch [2]float64
+	if !line.Periodic {
+		stretch = s.endSlopes(w, st.Rate.Component(c), c, n, t)
+	}
+	s.elastic.slope(w.tmp, w.part.Component(0), st.Field.Component(c), line.JumpOf(c), stretch)
+	return s.rhoAt(w, c, n, t)
 }
 
 // endSlopes returns φ_x at ends where it is not zero: the prescribed flux over κ
@@ -179,20 +212,21 @@ type Power struct {
 // that moves does work as well; it is the EnergyFlux of the link beside it and
 // not counted here.
 func (s *Discrete) Power(st field.State, t float64) Power {
-	w := s.newScratch()
+	w := s.borrow()
+	defer s.giveBack(w)
 	line, n := s.block.Space, s.rowAt(t)
 	h := line.Step
 	var p Power
 	for c := range s.wave.Components {
 		v := st.Rate.Component(c)
-		for i, j := range s.source.row(w.src, c, n, t) {
-			p.Source += h * s.u[i] * j * v[i]
+		if !s.source.zero() {
+			p.Source += float64(h * s.weightedProduct(s.source.row(w.src, c, n, t), v))
 		}
-		for i, a := range s.alpha.row(w.al, c, n, t) {
-			p.Loss -= h * s.u[i] * a * v[i] * v[i]
+		if !s.alpha.zero() {
+			p.Loss -= float64(h * s.weightedSquares(s.alpha.row(w.al, c, n, t), v))
 		}
 		if !s.beta.zero() {
-			p.Loss -= 2 * h * s.viscous.energy(v, stiffness{links: s.beta.row(w.be, c, n, t)}, 0)
+			p.Loss -= float64(2 * h * s.viscous.energy(v, stiffness{links: s.beta.row(w.be, c, n, t)}, 0))
 		}
 		if line.Periodic {
 			continue
@@ -200,16 +234,16 @@ func (s *Discrete) Power(st field.State, t float64) Power {
 		last := len(v) - 1
 		left, right := s.fluxAt(w, c, n, t)
 		for j, g := range s.elastic.flux[0] {
-			p.Left -= g * left * v[j]
+			p.Left -= float64(g * left * v[j])
 		}
 		for j, g := range s.elastic.flux[1] {
-			p.Right += g * right * v[last-j]
+			p.Right += float64(g * right * v[last-j])
 		}
 		if line.Left == lattice.Open {
-			p.Left -= s.impedance(w, c, n, t, false) * v[0] * v[0]
+			p.Left -= float64(s.impedance(w, c, n, t, false) * v[0] * v[0])
 		}
 		if line.Right == lattice.Open {
-			p.Right -= s.impedance(w, c, n, t, true) * v[last] * v[last]
+			p.Right -= float64(s.impedance(w, c, n, t, true) * v[last] * v[last])
 		}
 	}
 	return p

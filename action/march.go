@@ -1,9 +1,6 @@
 package action
 
-import (
-	"github.com/tenter-go/tenter/field"
-	"github.com/tenter-go/tenter/lattice"
-)
+import "github.com/tenter-go/tenter/field"
 
 // A March computes one slice from the two before it: it solves the residual of
 // slice n for slice n+1,
@@ -16,17 +13,16 @@ import (
 // is the leapfrog (Störmer–Verlet) method [Hairer, Lubich & Wanner 2003, Acta
 // Numerica 12, 399].
 //
-// A March has working memory and serves one goroutine at a time; its methods
-// allocate nothing. It belongs to a Lorentzian density.
+// A March has working memory and serves one goroutine at a time, but for Part;
+// its methods allocate nothing, but for the first Tangent. It belongs to a
+// Lorentzian density.
 type March struct {
-	s       *Discrete
-	w       *scratch
-	last    field.Slice // φ(n) − φ(n−1)
-	rhs     []float64
-	damp    []float64
-	viscous []*tridiagonal // of each component; nil without β
-	steady  bool           // the matrices do not depend on time
-	plain   []plain        // nil unless the coefficients are the same everywhere
+	s             *Discrete
+	w             *scratch
+	last          field.Slice // φ(n) − φ(n−1)
+	step, tangent []*chain    // nil with β
+	start         []*chain
+	viscous       *viscousMarch // nil without β
 }
 
 // March returns the march of a Lorentzian density. It panics for a Euclidean
@@ -35,23 +31,80 @@ func (s *Discrete) March() *March {
 	if s.wave.Signature == Euclidean {
 		panic("action: march of a Euclidean density; want a Lorentzian one")
 	}
-	n := len(s.xs)
-	m := &March{s: s, w: s.newScratch(), last: field.NewSlice(s.wave.Components, n), rhs: make([]float64, n), damp: make([]float64, n), plain: s.plainLines()}
+	m := &March{s: s, w: s.newScratch(), last: field.NewSlice(s.wave.Components, len(s.xs))}
 	if !s.beta.zero() {
-		for range s.wave.Components {
-			m.viscous = append(m.viscous, newTridiagonal(n))
-		}
-		m.steady = s.rho.fixed != nil && s.alpha.fixed != nil && s.beta.fixed != nil && s.kappa.fixed != nil
+		m.viscous = s.newViscousMarch(m.w)
+		return m
 	}
+	m.step = s.newChains(s.leapfrogRecipe(), false)
+	m.refresh(m.step, 0)
 	return m
 }
 
+func (s *Discrete) leapfrogRecipe() recipe {
+	kk, half := s.block.Time.Step*s.block.Time.Step, 1/(2*s.block.Time.Step)
+	return func(before, after, loss float64) (keep, den float64) {
+		l := float64(half * loss)
+		return before/kk - l, after/kk + l
+	}
+}
+
+// startRecipe is that of Start, with φ(n) − φ(n−1) = 2kv − δ, δ = φ(n+1) − φ(n),
+// in the formula of March.
+func (s *Discrete) startRecipe() recipe {
+	k := s.block.Time.Step
+	return func(before, after, loss float64) (keep, den float64) {
+		return 2*before/k - loss, (before + after) / (k * k)
+	}
+}
+
 // Step writes slice n+1 to next, given the slices n and n−1. At held and odd
-// ends next must hold the value of slice n+1 already; it is left alone.
+// ends next must hold the value of slice n+1 already; it is left alone. next may
+// be before.
 func (m *March) Step(next, now, before field.Slice, n int) {
-	s := m.s
-	s.wave.Potential.Slope(m.w.slope, now, s.at(s.block.Time.At(n)))
-	m.advance(next, now, before, n, true)
+	if m.viscous != nil {
+		s := m.s
+		s.wave.Potential.Slope(m.w.slope, now, s.at(s.block.Time.At(n)))
+		m.viscous.advance(next, now, m.gain(now, before), n, true)
+		return
+	}
+	m.refresh(m.step, n)
+	m.Part(next, now, before, n, 0, len(m.s.xs))
+}
+
+// Steady reports whether the march is the same at all times, so that Part may be
+// used.
+func (m *March) Steady() bool { return m.viscous == nil && steady(m.step) }
+
+// Part is Step for the sites from lo to hi−1. It reads slice n up to three sites
+// beyond them and the others at these sites only. Several goroutines may call it
+// for different sites, of different slices too. The march must be steady.
+func (m *March) Part(next, now, before field.Slice, n, lo, hi int) {
+	if !m.step[0].given {
+		for c, ch := range m.step {
+			ch.leap(next.Component(c), now.Component(c), before.Component(c), nil, lo, hi)
+		}
+		return
+	}
+	m.s.inStrips(now, m.s.block.Time.At(n), lo, hi, func(slope field.Slice, lo, hi int) {
+		for c, ch := range m.step {
+			ch.leap(next.Component(c), now.Component(c), before.Component(c), slope.Component(c), lo, hi)
+		}
+	})
+}
+
+// inStrips calls do for strips of the sites from lo to hi−1 that fit the nearest
+// cache, with V′ there.
+func (s *Discrete) inStrips(phi field.Slice, t float64, lo, hi int, do func(slope field.Slice, lo, hi int)) {
+	const strip = 1024
+	memory := borrow(s.wave.Components, strip)
+	defer memory.giveBack()
+	for ; lo < hi; lo += strip {
+		to := min(lo+strip, hi)
+		slope := memory.Part(0, to-lo)
+		s.wave.Potential.Slope(slope, phi.Part(lo, to), Sites{T: t, X: s.xs[lo:to]})
+		do(slope, lo, to)
+	}
 }
 
 // Tangent writes the change of slice n+1 to next, given the changes of the
@@ -60,23 +113,16 @@ func (m *March) Step(next, now, before field.Slice, n int) {
 func (m *March) Tangent(next, now, before, phi field.Slice, n int) {
 	s := m.s
 	s.curve(m.w.slope, m.w, phi, now, s.block.Time.At(n))
-	m.advance(next, now, before, n, false)
-}
-
-func (m *March) advance(next, now, before field.Slice, n int, full bool) {
-	s := m.s
-	if m.plain != nil {
-		m.advancePlain(next, now, before, n, full)
+	if m.viscous != nil {
+		m.viscous.advance(next, now, m.gain(now, before), n, false)
 		return
 	}
-	t := s.block.Time.At(n)
-	for c := range s.wave.Components {
-		to, at, from := next.Component(c), now.Component(c), before.Component(c)
-		gain := m.last.Component(c)
-		for i, p := range at {
-			gain[i] = p - from[i]
-		}
-		m.solve(to, at, gain, c, n, t, full)
+	if m.tangent == nil {
+		m.tangent = s.newChains(s.leapfrogRecipe(), true)
+	}
+	m.refresh(m.tangent, n)
+	for c, ch := range m.tangent {
+		ch.leap(next.Component(c), now.Component(c), before.Component(c), m.w.slope.Component(c), 0, len(s.xs))
 	}
 }
 
@@ -85,128 +131,41 @@ func (m *March) advance(next, now, before field.Slice, n int, full bool) {
 // equation implies. At held and odd ends next must hold its value already.
 func (m *March) Start(next field.Slice, st field.State, n int) {
 	s := m.s
-	k := s.block.Time.Step
-	t := s.block.Time.At(n)
-	s.wave.Potential.Slope(m.w.slope, st.Field, s.at(t))
-	for c := range s.wave.Components {
-		to, at, v := next.Component(c), st.Field.Component(c), st.Rate.Component(c)
-		f := m.rhs
-		clear(f)
-		s.addForce(f, m.w, at, m.w.slope.Component(c), c, n, t, 1)
-		s.addLoss(f, m.w, v, c, n, t, 1)
-		before, after := s.rhoAround(m.w, c, n)
-		for i := range to {
-			if m.held(i) {
-				continue
-			}
-			// φ(n) − φ(n−1) = 2kv − δ, δ = φ(n+1) − φ(n), in the formula of March
-			u := s.u[i]
-			to[i] = at[i] + (2*before[i]*v[i]*k+k*k*f[i]/u)/(before[i]+after[i])
-		}
-	}
-}
-
-func (m *March) held(i int) bool {
-	return i == 0 && m.s.HeldLeft() || i == len(m.s.xs)-1 && m.s.HeldRight()
-}
-
-// solve writes component c of slice n+1 to next, gain being φ(n) − φ(n−1).
-func (m *March) solve(next, now, gain []float64, c, n int, t float64, full bool) {
-	s, w := m.s, m.w
-	k := s.block.Time.Step
-	f := m.rhs
-	clear(f)
-	slope := w.slope.Component(c)
-	if full {
-		s.addForce(f, w, now, slope, c, n, t, 1)
-	} else {
-		s.addLinearForce(f, w, now, slope, c, n, t, 1)
-	}
-	m.damping(m.damp, c, n, t) // before ρ, whose memory it shares
-	before, after := s.rhoAround(w, c, n)
-	lo, hi := 0, len(f)
-	if s.HeldLeft() {
-		lo = 1
-	}
-	if s.HeldRight() {
-		hi--
-	}
-	if s.lossy() == "" {
-		for i := lo; i < hi; i++ {
-			next[i] = now[i] + (before[i]*gain[i]+k*k/s.u[i]*f[i])/after[i]
-		}
-		return
-	}
+	s.wave.Potential.Slope(m.w.slope, st.Field, s.at(s.block.Time.At(n)))
 	if m.viscous != nil {
-		m.solveViscous(next, now, gain, before, after, c, n, t)
+		m.viscous.start(next, st, n)
 		return
 	}
-	for i := lo; i < hi; i++ {
-		u, a := s.u[i]/(k*k), m.damp[i]
-		next[i] = now[i] + ((u*before[i]-a)*gain[i]+f[i])/(u*after[i]+a)
+	if m.start == nil {
+		m.start = s.newChains(s.startRecipe(), false)
 	}
-}
-
-// solveViscous solves
-//
-//	(uρ₊/k² + a − B/2k)δ = (uρ₋/k² − a + B/2k)gain + f,
-//
-// B the second difference that β carries, for δ = φ(n+1) − φ(n). f and a stand
-// in the working memory.
-func (m *March) solveViscous(next, now, gain, before, after []float64, c, n int, t float64) {
-	s, f, a := m.s, m.rhs, m.damp
-	k := s.block.Time.Step
-	beta := stiffness{links: s.beta.row(m.w.be, c, n, t)}
-	matrix := m.viscous[c]
-	if !m.steady || !matrix.factored {
-		for i := range f {
-			matrix.diagonal[i] = s.u[i]/(k*k)*after[i] + a[i]
-		}
-		matrix.subtractLinks(beta.links, s.block.Space.Periodic, s.viscous.w[0]/(2*k))
-		if s.HeldLeft() {
-			matrix.hold(0)
-		}
-		if s.HeldRight() {
-			matrix.hold(1)
-		}
-		matrix.factor()
-	}
-	s.viscous.addForce(f, gain, beta, 0, 1/(2*k))
-	for i, u := range s.u {
-		f[i] += (u/(k*k)*before[i] - a[i]) * gain[i]
-	}
-	if s.HeldLeft() {
-		matrix.set(0, next[0]-now[0], f)
-	}
-	if last := len(f) - 1; s.HeldRight() {
-		matrix.set(1, next[last]-now[last], f)
-	}
-	matrix.solve(f)
-	for i, d := range f {
-		if !m.held(i) {
-			next[i] = now[i] + d
+	m.refresh(m.start, n)
+	for c, ch := range m.start {
+		to, at, gain := next.Component(c), st.Field.Component(c), m.last.Component(c)
+		ch.accelerate(gain, at, st.Rate.Component(c), m.w.slope.Component(c), 0, len(s.xs))
+		for i := ch.first; i < ch.last; i++ {
+			to[i] = at[i] + gain[i]
 		}
 	}
 }
 
-// damping writes uα/2k, and √(ρκ)/2kh at open ends, to a.
-func (m *March) damping(a []float64, c, n int, t float64) {
-	s := m.s
-	line := s.block.Space
-	half := 1 / (2 * s.block.Time.Step)
-	if s.lossy() == "" {
-		return
+func (m *March) refresh(chains []*chain, n int) {
+	for _, ch := range chains {
+		ch.refresh(m.w, n, m.s.block.Time.At(n))
 	}
-	for i, v := range s.alpha.row(m.w.al, c, n, t) {
-		a[i] = half * s.u[i] * v
+}
+
+func steady(chains []*chain) bool {
+	for _, ch := range chains {
+		if !ch.steady {
+			return false
+		}
 	}
-	if line.Periodic {
-		return
-	}
-	if line.Left == lattice.Open {
-		a[0] += half * s.impedance(m.w, c, n, t, false) / line.Step
-	}
-	if line.Right == lattice.Open {
-		a[len(a)-1] += half * s.impedance(m.w, c, n, t, true) / line.Step
-	}
+	return true
+}
+
+func (m *March) gain(now, before field.Slice) field.Slice {
+	m.last.CopyFrom(now)
+	m.last.Axpy(-1, before)
+	return m.last
 }

@@ -70,7 +70,7 @@ func (s *Discrete) addLoss(dst []float64, w *scratch, v []float64, c, n int, t, 
 	line := s.block.Space
 	if !s.alpha.zero() {
 		for i, a := range s.alpha.row(w.al, c, n, t) {
-			dst[i] -= scale * s.u[i] * a * v[i]
+			dst[i] -= float64(scale * s.u[i] * a * v[i])
 		}
 	}
 	if !s.beta.zero() {

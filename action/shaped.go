@@ -89,6 +89,9 @@ func (s *Shaped) Region() *lattice.Region { return s.region }
 // Density returns the density with its defaults filled in.
 func (s *Shaped) Density() Wave { return s.wave.wave }
 
+// Signature returns whether the action is of T − U or T + U.
+func (s *Shaped) Signature() Signature { return s.wave.wave.Signature }
+
 // Conservative returns nil: losses are refused.
 func (s *Shaped) Conservative() error { return nil }
 

@@ -4,6 +4,9 @@ package action
 // on a ring, and its factors. Elimination without pivoting is stable for it
 // [Golub & Van Loan 2013, Matrix Computations, §4.3].
 //
+// Products are rounded before they are added, so that the bits are the same on
+// every machine.
+//
 // Fill diagonal, then call subtractLinks, hold for known unknowns, and factor;
 // solve may then be called any number of times.
 type tridiagonal struct {
@@ -32,7 +35,7 @@ func (m *tridiagonal) subtractLinks(links []float64, ring bool, scale float64) {
 	m.ring = ring
 	m.ends = [2]float64{}
 	for i, b := range links {
-		v := scale * b
+		v := float64(scale * b)
 		j := i + 1
 		if j == n {
 			j = 0
@@ -65,7 +68,7 @@ func (m *tridiagonal) set(end int, v float64, f []float64) {
 	if end == 1 {
 		i, beside = len(f)-1, len(f)-2
 	}
-	f[beside] -= m.ends[end] * v
+	f[beside] -= float64(m.ends[end] * v)
 	f[i] = v
 }
 
@@ -80,7 +83,7 @@ func (m *tridiagonal) factor() {
 		m.inverse[i] = 1 / pivot
 		if i+1 < n {
 			m.ratio[i] = m.above[i] * m.inverse[i]
-			pivot = m.diagonal[i+1] - m.ratio[i]*m.above[i]
+			pivot = m.diagonal[i+1] - float64(m.ratio[i]*m.above[i])
 		}
 	}
 	if !m.ring {
@@ -94,7 +97,7 @@ func (m *tridiagonal) factor() {
 	q[0] += corner
 	q[n-1] += side
 	m.eliminate(q)
-	m.schur = 1 / (m.diagonal[n] - corner*q[0] - side*q[n-1])
+	m.schur = 1 / (m.diagonal[n] - float64(corner*q[0]) - float64(side*q[n-1]))
 }
 
 // solve overwrites f with the solution.
@@ -106,9 +109,9 @@ func (m *tridiagonal) solve(f []float64) {
 	last := len(f) - 1
 	m.eliminate(f[:last])
 	corner, side := m.above[last], m.above[last-1]
-	z := (f[last] - corner*f[0] - side*f[last-1]) * m.schur
+	z := (f[last] - float64(corner*f[0]) - float64(side*f[last-1])) * m.schur
 	for i, q := range m.around[:last] {
-		f[i] -= z * q
+		f[i] -= float64(z * q)
 	}
 	f[last] = z
 }
@@ -121,9 +124,9 @@ func (m *tridiagonal) eliminate(f []float64) {
 	for i, v := range f {
 		v -= carried
 		f[i] = v * inverse[i]
-		carried = ratio[i] * v
+		carried = float64(ratio[i] * v)
 	}
 	for i := n - 2; i >= 0; i-- {
-		f[i] -= ratio[i] * f[i+1]
+		f[i] -= float64(ratio[i] * f[i+1])
 	}
 }

@@ -11,7 +11,8 @@ import "github.com/tenter-go/tenter/field"
 // flux. Losses and open ends do not enter.
 func (s *Discrete) Value(h *field.History) float64 {
 	s.mustFit(h)
-	w := s.newScratch()
+	w := s.borrow()
+	defer s.giveBack(w)
 	line, clock := s.block.Space, s.block.Time
 	v := make([]float64, len(s.xs))
 	var sum float64
@@ -24,9 +25,7 @@ func (s *Discrete) Value(h *field.History) float64 {
 			u += s.elastic.energy(phi.Component(c), s.kappaAt(w, c, n, t), line.JumpOf(c))
 			sigma := s.sigma.row(w.sigma, c, n, t)
 			if c == 0 {
-				for i, x := range v {
-					u += s.u[i] * sigma[i] * x
-				}
+				u += s.weightedProduct(sigma, v)
 			}
 			u += s.sourceEnergy(w, phi.Component(c), c, n, t)
 		}
@@ -56,8 +55,8 @@ func (s *Discrete) Value(h *field.History) float64 {
 // sourceEnergy returns −Σ uJφ − (fφ)|ends/h, per hk.
 func (s *Discrete) sourceEnergy(w *scratch, phi []float64, c, n int, t float64) float64 {
 	var u float64
-	for i, j := range s.source.row(w.src, c, n, t) {
-		u -= s.u[i] * j * phi[i]
+	if !s.source.zero() {
+		u = -s.weightedProduct(s.source.row(w.src, c, n, t), phi)
 	}
 	if s.block.Space.Periodic {
 		return u
@@ -65,10 +64,10 @@ func (s *Discrete) sourceEnergy(w *scratch, phi []float64, c, n int, t float64) 
 	left, right := s.fluxAt(w, c, n, t)
 	last, h := len(phi)-1, s.block.Space.Step
 	for j, g := range s.elastic.flux[0] {
-		u += g * left * phi[j] / h
+		u += float64(g*left*phi[j]) / h
 	}
 	for j, g := range s.elastic.flux[1] {
-		u -= g * right * phi[last-j] / h
+		u -= float64(g*right*phi[last-j]) / h
 	}
 	return u
 }

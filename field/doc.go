@@ -41,6 +41,7 @@
 //	φ⁴           Phi4Kink, Phi4Antikink
 //	φ⁶           Phi6Kink in four sectors
 //	linear       PlaneWave, GaussianPacket
+//	round        NewLump, a guess for a bounce
 //	any          Superpose
 //
 // The kinks, breathers and collisions are exact solutions of the continuum
@@ -52,6 +53,11 @@
 //
 // On a lattice an exact solution of the continuum is no longer exact: evolved
 // at the spacing h it is off by O(h²) or whatever the order of the scheme is.
+//
+// # Slopes
+//
+// [History.TimeSlope] and [History.SpaceSlope] are ∂φ/∂t and ∂φ/∂x by differences of
+// order 2: the directions in which a history moves when it is shifted.
 //
 // # Resampling
 //

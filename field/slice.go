@@ -3,6 +3,8 @@ package field
 import (
 	"fmt"
 	"math"
+
+	"github.com/tenter-go/tenter/internal/kernel"
 )
 
 // A Slice is the field on the sites of one time: Components × Sites values.
@@ -88,10 +90,8 @@ func (s Slice) Zero() {
 func (s Slice) Axpy(a float64, x Slice) {
 	mustMatch(s, x)
 	for c := range s.Components {
-		d, v := s.Component(c), x.Component(c)
-		for i := range d {
-			d[i] += float64(a * v[i])
-		}
+		d := s.Component(c)
+		kernel.AddScaled(d, d, a, x.Component(c))
 	}
 }
 
@@ -119,6 +119,9 @@ func (s Slice) Check() error {
 func (s Slice) FirstNotFinite() (component, site int, found bool) {
 	for c := range s.Components {
 		v := s.Component(c)
+		if kernel.Finite(v) {
+			continue
+		}
 		for i, x := range v {
 			if math.IsNaN(x - x) { // true for NaN and ±Inf
 				return c, i, true

@@ -28,6 +28,10 @@ type Settings struct {
 	// the energy of slice 0 only. At held ends it must have their values.
 	Second field.Slice
 
+	// Workers is the number of goroutines that share the sites of a long line; 0
+	// means all cores. The bits do not depend on it.
+	Workers int
+
 	// Resume continues from a checkpoint of the same method and action; the
 	// start is used for the values that held ends keep.
 	Resume *Checkpoint
@@ -50,7 +54,7 @@ type Run struct {
 
 // checkEvery is the number of steps between tests for values that are not
 // finite, where nobody looks at the slices.
-const checkEvery = 64
+const checkEvery = 512
 
 // Evolve carries Cauchy data at the first slice of the action's block to the
 // last. It refuses a step above the stability limit of the method with
@@ -69,7 +73,7 @@ func Evolve(ctx context.Context, s *action.Discrete, start field.State, set Sett
 	if err := check(s, start, set); err != nil {
 		return nil, err
 	}
-	p := Problem{Action: s, Start: start.Clone(), Second: set.Second, Ends: set.Ends}
+	p := Problem{Action: s, Start: start.Clone(), Second: set.Second, Ends: set.Ends, Workers: set.Workers}
 	st, err := set.Method.Start(p)
 	if err != nil {
 		return nil, err
@@ -217,14 +221,43 @@ func (l *loop) run(ctx context.Context) error {
 		if err := ctx.Err(); err != nil {
 			return fmt.Errorf("integrate: stopped at t = %g, slice %d of %d: %w", m.Time, m.Slice, m.Last, err)
 		}
-		l.step()
+		l.advance(l.quiet())
 	}
 }
 
-func (l *loop) step() {
+// quiet returns the number of steps to the next slice that somebody looks at, or
+// fewer on a line so long that a cancelled run would take noticeably long to end.
+func (l *loop) quiet() int {
+	const enough = 64 // steps, to block them in time
+	const work = 1 << 25
 	m := &l.moment
-	l.st.Step()
-	m.Slice++
+	f := l.st.Field()
+	steps := min(checkEvery-(m.Slice-l.goodAt), max(enough, work/(f.Components*f.Sites)))
+	if _, ok := l.st.(Advancer); !ok {
+		steps = 1
+	}
+	until := func(stride, from int) { steps = min(steps, stride-(m.Slice-from)%stride) }
+	if l.set.Every > 0 {
+		until(l.set.Every, 0)
+	}
+	for _, o := range l.set.Observers {
+		until(max(1, o.Stride()), m.First)
+	}
+	return min(max(steps, 1), m.Last-m.Slice)
+}
+
+func (l *loop) step() { l.advance(1) }
+
+func (l *loop) advance(steps int) {
+	m := &l.moment
+	if a, ok := l.st.(Advancer); ok && steps > 1 {
+		a.Advance(steps)
+	} else {
+		for range steps {
+			l.st.Step()
+		}
+	}
+	m.Slice += steps
 	m.Time = m.Action.Block().Time.At(m.Slice)
 	m.fresh = false
 }

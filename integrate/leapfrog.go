@@ -3,6 +3,7 @@ package integrate
 import (
 	"github.com/tenter-go/tenter/action"
 	"github.com/tenter-go/tenter/field"
+	"github.com/tenter-go/tenter/internal/kernel"
 )
 
 // Leapfrog is the Störmer–Verlet method, order 2, symplectic and reversible: the
@@ -24,7 +25,7 @@ func (Leapfrog) Limit() float64 { return 2 }
 func (Leapfrog) Start(p Problem) (Stepper, error) {
 	f := p.Start.Field
 	l := &leapfrog{
-		p: p, march: p.Action.March(),
+		p: p, march: p.Action.March(), held: p.Action.HeldLeft() || p.Action.HeldRight(),
 		before: field.NewSlice(f.Components, f.Sites),
 		now:    f.Clone(),
 		next:   field.NewSlice(f.Components, f.Sites),
@@ -42,14 +43,19 @@ func (Leapfrog) Start(p Problem) (Stepper, error) {
 	}
 	l.before.CopyFrom(l.next)
 	l.before.Axpy(-2*clock.Step, rate)
+	l.block = p.block(2*f.Components, l.part)
 	return l, nil
 }
 
 type leapfrog struct {
 	p                 Problem
 	march             *action.March
+	block             blocked
+	held              bool
 	n                 int // slice of now
 	before, now, next field.Slice
+	older, newer      field.Slice // of a blocked run: slices first−1 and first
+	first             int
 }
 
 func (l *leapfrog) Step() {
@@ -59,16 +65,49 @@ func (l *leapfrog) Step() {
 	l.march.Step(l.next, l.now, l.before, l.n)
 }
 
+// Advance makes all but the last step in two arrays, the slice after taking the
+// place of the slice before.
+func (l *leapfrog) Advance(steps int) {
+	if l.march.Steady() && steps > 1 {
+		l.run(l.next, l.now, l.n+1, steps-1)
+		l.n += steps - 1
+		if steps%2 == 0 {
+			l.now, l.next = l.next, l.now
+		}
+		steps = 1
+	}
+	for range steps {
+		l.Step()
+	}
+}
+
+// run makes steps from the slices first and first−1.
+func (l *leapfrog) run(newer, older field.Slice, first, steps int) {
+	l.newer, l.older, l.first = newer, older, first
+	l.block.advance(steps)
+}
+
+// part makes step number s of a run at the sites from lo to hi−1.
+func (l *leapfrog) part(s, lo, hi int) {
+	now, next := l.newer, l.older
+	if s%2 == 1 {
+		now, next = next, now
+	}
+	l.march.Part(next, now, next, l.first+s, lo, hi)
+	if l.held {
+		l.p.placePart(next, l.first+s+1, lo, hi)
+	}
+}
+
 func (l *leapfrog) Field() field.Slice { return l.now }
 
 func (l *leapfrog) State(dst field.State) {
 	dst.Field.CopyFrom(l.now)
-	k := l.p.Action.Block().Time.Step
+	half := 1 / (2 * l.p.Action.Block().Time.Step)
 	for c := range dst.Rate.Components {
-		r, a, b := dst.Rate.Component(c), l.next.Component(c), l.before.Component(c)
-		for i := range r {
-			r[i] = (a[i] - b[i]) / (2 * k)
-		}
+		r := dst.Rate.Component(c)
+		kernel.AddScaled(r, l.next.Component(c), -1, l.before.Component(c))
+		kernel.Scale(r, half, r)
 	}
 }
 

@@ -1,6 +1,10 @@
 package integrate
 
-import "math"
+import (
+	"math"
+
+	"github.com/tenter-go/tenter/internal/kernel"
+)
 
 // MeanRate is an observer of the mean of φ_t over time and sites, which for the
 // phase of a Josephson junction is its voltage. The mean over time is taken from
@@ -24,13 +28,11 @@ func (r *MeanRate) Observe(m *Moment) error {
 	if m.Time < r.From {
 		return nil
 	}
-	line := m.Action.Block().Space
-	var sum, cells float64
-	for i, p := range m.Field().Component(r.Component) {
-		sum += line.Weight(i) * p
-		cells += line.Weight(i)
-	}
-	r.now, r.end = sum/cells, m.Time
+	line, v := m.Action.Block().Space, m.Field().Component(r.Component)
+	last := len(v) - 1
+	left, right := line.Weight(0), line.Weight(last)
+	sum := kernel.Sum(v[1:last]) + (float64(left*v[0]) + float64(right*v[last]))
+	r.now, r.end = sum/(float64(last-1)+left+right), m.Time
 	if !r.started {
 		r.started, r.first, r.start = true, r.now, m.Time
 	}

@@ -40,18 +40,27 @@ type Stepper interface {
 	Seek(n int)
 }
 
+// An Advancer is a Stepper that makes many steps faster than one by one, with the
+// same bits. Evolve uses it where nobody looks in between.
+type Advancer interface {
+	Stepper
+	Advance(steps int)
+}
+
 // A Problem is what a method starts from.
 type Problem struct {
-	Action *action.Discrete
-	Start  field.State // at the first slice of the block
-	Second field.Slice // the slice after it, if given; else made from the rate
-	Ends   Ends
+	Action  *action.Discrete
+	Start   field.State // at the first slice of the block
+	Second  field.Slice // the slice after it, if given; else made from the rate
+	Ends    Ends
+	Workers int // goroutines on a long line; 0 means all cores
 }
 
 // Ends gives the values of held ends as functions of time, for one component
 // each; nil keeps the value of the start. They are also called a step before the
 // first slice and after the last, for the rates of the ends, which are central
-// differences and replace those of the start.
+// differences and replace those of the start, and on a long line from several
+// goroutines.
 type Ends struct {
 	Left, Right func(component int, t float64) float64
 }
@@ -70,6 +79,23 @@ func (p *Problem) place(phi field.Slice, t float64) {
 		}
 		if right {
 			v[last] = p.end(p.Ends.Right, c, last, t)
+		}
+	}
+}
+
+// keepsEnds reports whether held ends keep their values.
+func (p *Problem) keepsEnds() bool { return p.Ends.Left == nil && p.Ends.Right == nil }
+
+// placePart is place at slice n for the ends among the sites from lo to hi−1.
+func (p *Problem) placePart(phi field.Slice, n, lo, hi int) {
+	last := phi.Sites - 1
+	t := p.Action.Block().Time.At(n)
+	for c := range phi.Components {
+		if lo == 0 && p.Action.HeldLeft() {
+			phi.Component(c)[0] = p.end(p.Ends.Left, c, 0, t)
+		}
+		if hi == phi.Sites && p.Action.HeldRight() {
+			phi.Component(c)[last] = p.end(p.Ends.Right, c, last, t)
 		}
 	}
 }

@@ -25,21 +25,23 @@ func (RK4) Limit() float64 { return 2.8284271247461903 }
 // long for the losses is refused with [*Unstable], whose ω is then their rate of
 // decay.
 func (RK4) Start(p Problem) (Stepper, error) {
-	acc, err := startBetween(p)
+	sub, err := startBetween(p)
 	if err != nil {
 		return nil, fmt.Errorf("integrate: RK4: %w", err)
 	}
 	f := p.Start.Field
-	r := &rk4{p: p, acc: acc, now: p.Start.Clone(), stage: field.NewState(f.Components, f.Sites)}
-	for i := range r.slope {
-		r.slope[i] = field.NewState(f.Components, f.Sites)
+	r := &rk4{p: p, sub: sub}
+	r.stage[0] = p.Start.Clone()
+	for m := range r.stage[1:] {
+		r.stage[1+m] = field.NewState(f.Components, f.Sites)
 	}
-	r.hold(r.now, 0)
+	r.hold(r.stage[0], 0)
 	if p.Action.Conservative() != nil {
 		if err := r.checkDecay(); err != nil {
 			return nil, err
 		}
 	}
+	r.block = p.block(8*f.Components, r.part)
 	return r, nil
 }
 
@@ -50,12 +52,14 @@ func (RK4) Start(p Problem) (Stepper, error) {
 func (r *rk4) checkDecay() error {
 	const limit, rounds = 2.785, 30
 	clock := r.p.Action.Block().Time
-	with, without := r.slope[0].Rate, r.slope[1].Rate
-	v, still := r.stage, r.slope[2]
-	v.Field.CopyFrom(r.now.Field)
-	still.Field.CopyFrom(r.now.Field)
+	acc, err := r.p.Action.Accelerator()
+	if err != nil {
+		return err
+	}
+	v, still := r.stage[0].Clone(), r.stage[0].Clone()
+	with, without := v.Rate.Clone(), v.Rate.Clone()
 	still.Rate.Zero()
-	r.acc.At(without, still, clock.At(0))
+	acc.At(without, still, clock.At(0))
 	for c := range v.Rate.Components {
 		for i := range v.Rate.Sites {
 			v.Rate.Component(c)[i] = float64(1 - 2*(i%2))
@@ -63,7 +67,7 @@ func (r *rk4) checkDecay() error {
 	}
 	var d float64
 	for range rounds {
-		r.acc.At(with, v, clock.At(0))
+		acc.At(with, v, clock.At(0))
 		with.Axpy(-1, without)
 		if d = with.MaxAbs() / v.Rate.MaxAbs(); d == 0 {
 			return nil
@@ -77,57 +81,74 @@ func (r *rk4) checkDecay() error {
 	return nil
 }
 
-// startBetween returns the accelerator of a problem for a method that steps
-// inside time links.
-func startBetween(p Problem) (*action.Accelerator, error) {
+// startBetween returns the sub-steps of a problem for a method that steps inside
+// time links.
+func startBetween(p Problem) (*action.Substeps, error) {
 	if !p.Second.Empty() {
 		return nil, fmt.Errorf("a second slice is given; want a start from the field and its rate, or leapfrog")
 	}
-	return p.Action.Accelerator()
+	return p.Action.Substeps()
 }
 
 type rk4 struct {
 	p     Problem
-	acc   *action.Accelerator
+	sub   *action.Substeps
+	block blocked
 	n     int
-	now   field.State
-	stage field.State
-	slope [4]field.State // (φ_t, φ_tt) at each stage
+	stage [4]field.State // the first is the state itself
 }
 
 // hold puts held ends in place after part of a step.
 func (r *rk4) hold(st field.State, part float64) {
 	clock := r.p.Action.Block().Time
-	t := clock.At(r.n) + part*clock.Step
+	t := clock.At(r.n) + float64(part*clock.Step)
 	r.p.place(st.Field, t)
 	r.p.placeRate(st.Rate, t)
 }
 
+// rk4Parts are the parts of a step between the start and the stages.
+var rk4Parts = [5]float64{0, 0.5, 0.5, 1, 1}
+
 func (r *rk4) Step() {
-	clock := r.p.Action.Block().Time
-	t, k := clock.At(r.n), clock.Step
-	parts := [4]float64{0, 0.5, 0.5, 1}
-	at := r.now
-	for m, part := range parts {
-		if m > 0 {
-			r.stage.CopyFrom(r.now)
-			r.stage.Field.Axpy(part*k, r.slope[m-1].Field)
-			r.stage.Rate.Axpy(part*k, r.slope[m-1].Rate)
-			r.hold(r.stage, part)
-			at = r.stage
+	for m := range r.stage {
+		r.substep(m, 0, r.stage[0].Field.Sites)
+		if m < 3 {
+			r.hold(r.stage[m+1], rk4Parts[m+1])
 		}
-		r.slope[m].Field.CopyFrom(at.Rate)
-		r.acc.At(r.slope[m].Rate, at, t+part*k)
-	}
-	for m, w := range [4]float64{1. / 6, 1. / 3, 1. / 3, 1. / 6} {
-		r.now.Field.Axpy(w*k, r.slope[m].Field)
-		r.now.Rate.Axpy(w*k, r.slope[m].Rate)
 	}
 	r.n++
-	r.hold(r.now, 0)
+	r.hold(r.stage[0], 0)
 }
 
-func (r *rk4) Field() field.Slice    { return r.now.Field }
-func (r *rk4) State(dst field.State) { dst.CopyFrom(r.now) }
-func (r *rk4) Memory() []field.Slice { return []field.Slice{r.now.Field, r.now.Rate} }
+// substep makes the stage after stage m, or the end of the step after the last,
+// at the sites from lo to hi−1.
+func (r *rk4) substep(m, lo, hi int) {
+	clock := r.p.Action.Block().Time
+	k, st := clock.Step, &r.stage
+	t := clock.At(r.n) + float64(rk4Parts[m]*k)
+	if m < 3 {
+		r.sub.Stage(st[m+1], st[m], st[0], rk4Parts[m+1]*k, t, lo, hi)
+		return
+	}
+	r.sub.Finish(st[0], st[1].Rate, st[2].Rate, st[3], k/6, t, lo, hi)
+}
+
+// Advance blocks the stages in time where no end moves.
+func (r *rk4) Advance(steps int) {
+	if r.sub.Steady() && r.p.keepsEnds() {
+		r.block.advance(4 * steps)
+		r.n += steps
+		return
+	}
+	for range steps {
+		r.Step()
+	}
+}
+
+// part makes sub-step s of a run, which is the same at all times.
+func (r *rk4) part(s, lo, hi int) { r.substep(s%4, lo, hi) }
+
+func (r *rk4) Field() field.Slice    { return r.stage[0].Field }
+func (r *rk4) State(dst field.State) { dst.CopyFrom(r.stage[0]) }
+func (r *rk4) Memory() []field.Slice { return []field.Slice{r.stage[0].Field, r.stage[0].Rate} }
 func (r *rk4) Seek(n int)            { r.n = n }

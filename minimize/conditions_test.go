@@ -2,6 +2,7 @@ package minimize
 
 import (
 	"context"
+	"errors"
 	"math"
 	"testing"
 
@@ -243,5 +244,162 @@ func TestBoundsWithAMean(t *testing.T) {
 	}
 	if touching == 0 || touching == line.Sites {
 		t.Errorf("%d sites touch the bound; want some", touching)
+	}
+}
+
+// The same formula for the least residual: with the residual r = Lφ linear and
+// of strength q, the posterior mean solves (LᵀL hk/q² + Σ aaᵀ/σ²)φ = Σ a d/σ².
+func TestGaussMarkovOfAResidual(t *testing.T) {
+	b := lattice.Block{Time: lattice.Axis{Step: 0.3, Sites: 6}, Space: lattice.Axis{Step: 0.4, Sites: 5}}
+	s, err := action.New(b, action.Wave{Potential: action.Mass(1), Alpha: action.Uniform(0.2)})
+	if err != nil {
+		t.Fatal(err)
+	}
+	held := constraint.On(b)
+	for i := range 5 { // noisy readings of two slices, and of one event later on
+		held.Observe(0, b.Space.At(i), math.Sin(float64(i)), 0.1)
+		held.Observe(0.9, b.Space.At(i), math.Cos(float64(i)), 0.3)
+	}
+	held.Observe(1.5, 0.8, 0.4, 0.05)
+	held.EndToEnd(3, 0.2).Soft(0.4)
+	held.Mean(5, -0.1) // hard
+	start := field.NewHistory(b, 1)
+	const q = 0.7
+	found, err := LeastResidual(context.Background(), s, held, start, &Settings{ResidualScale: q})
+	if err != nil {
+		t.Fatal(err)
+	}
+	n := len(start.Data)
+	free, err := held.Free(start)
+	if err != nil {
+		t.Fatal(err)
+	}
+	// One more unknown for the hard condition.
+	full, rhs := mat.NewSymDense(n+1, nil), mat.NewVecDense(n+1, nil)
+	jac := s.ResidualJacobian(nil, start)
+	for r := range n {
+		columns, values := jac.Row(r)
+		for a, e := range columns {
+			for c, f := range columns {
+				if f <= e {
+					full.SetSym(e, f, full.At(e, f)+values[a]*values[c]*0.3*0.4/(q*q))
+				}
+			}
+		}
+	}
+	for e, term := range free.Terms() {
+		_, slope, curvature := term.At(0)
+		full.SetSym(e, e, full.At(e, e)+curvature)
+		rhs.SetVec(e, rhs.AtVec(e)-slope)
+	}
+	for _, row := range free.SoftRows() {
+		for k, e := range row.Index {
+			for l, f := range row.Index[:k+1] {
+				full.SetSym(int(e), int(f), full.At(int(e), int(f))+row.Precision*row.Coefficient[k]*row.Coefficient[l])
+			}
+			rhs.SetVec(int(e), rhs.AtVec(int(e))+row.Precision*row.Target*row.Coefficient[k])
+		}
+	}
+	for _, row := range free.HardRows() {
+		for k, e := range row.Index {
+			full.SetSym(n, int(e), row.Coefficient[k])
+		}
+		rhs.SetVec(n, row.Target)
+	}
+	var want mat.VecDense
+	if err := want.SolveVec(full, rhs); err != nil {
+		t.Fatal(err)
+	}
+	for e, v := range found.History.Data {
+		// The normal equations of a condition number near 1e5, squared, times
+		// rounding.
+		if math.Abs(v-want.AtVec(e)) > 1e-7 {
+			t.Fatalf("value %d is %v, dense formula %v\n%v", e, v, want.AtVec(e), found.Report)
+		}
+	}
+	for _, r := range found.Reactions {
+		// With C + λ(Σaφ − b) stationary, ∂C/∂φ = −λa: push and λ differ in sign.
+		if math.Abs(r.Push+want.AtVec(n)) > 1e-6*(1+math.Abs(want.AtVec(n))) {
+			t.Errorf("reaction %v, dense formula %g", r, -want.AtVec(n))
+		}
+	}
+	if len(found.Reactions) != 1 {
+		t.Errorf("%d reactions, want that of the mean", len(found.Reactions))
+	}
+}
+
+func TestStrategiesRefuseSoftConditions(t *testing.T) {
+	b := lattice.Block{Time: lattice.Axis{Step: 0.3, Sites: 6}, Space: lattice.Axis{Step: 0.4, Sites: 5}}
+	s, err := action.New(b, action.Wave{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	held := constraint.On(b)
+	held.Slice(0, field.NewSlice(1, 5))
+	held.Slice(1, field.NewSlice(1, 5))
+	held.Observe(0.9, 0.4, 1, 0.1)
+	start := field.NewHistory(b, 1)
+	for _, way := range []Strategy{Marching, Windows, CoarseToFine, Shooting, Dragging} {
+		var refusal *Refusal
+		if _, err := LeastResidual(context.Background(), s, held, start, &Settings{Strategy: way}); !errors.As(err, &refusal) {
+			t.Errorf("%v: %v, want a *Refusal", way, err)
+		}
+	}
+	found, err := LeastResidual(context.Background(), s, held, start, nil)
+	if err != nil || found.Report.Strategy != BlockWide {
+		t.Errorf("left to itself: %v by %v, want block-wide", err, found.Report.Strategy)
+	}
+}
+
+func TestLeastResidualRefusesBounds(t *testing.T) {
+	b := lattice.Block{Time: lattice.Axis{Step: 0.3, Sites: 6}, Space: lattice.Axis{Step: 0.4, Sites: 5}}
+	s, err := action.New(b, action.Wave{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	held := constraint.On(b)
+	held.Bound(0.3, 0.4, 0, 1)
+	var refusal *Refusal
+	if _, err := LeastResidual(context.Background(), s, held, field.NewHistory(b, 1), nil); !errors.As(err, &refusal) {
+		t.Errorf("bounds: %v, want a *Refusal", err)
+	}
+}
+
+// A minimum under a hard linear condition is a stationary history of index 0
+// under it, with the same reaction.
+func TestStationaryUnderALinearCondition(t *testing.T) {
+	b := lattice.Block{Time: lattice.Axis{Step: 0.5, Sites: 5}, Space: lattice.Axis{Step: 0.4, Sites: 7}}
+	s, err := action.New(b, action.Wave{Potential: action.Phi4{}, Signature: action.Euclidean})
+	if err != nil {
+		t.Fatal(err)
+	}
+	held := constraint.On(b)
+	held.Mean(2, 0.6)
+	held.Event(0, 0, -1)
+	start := field.NewHistory(b, 1)
+	for i := range start.Data {
+		start.Data[i] = 0.9
+	}
+	low, err := Minimum(context.Background(), s, held, start, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	still, err := Stationary(context.Background(), s, held, low.History, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if d := still.History.MaxDifference(low.History); d > 1e-9 { // the tolerance of both
+		t.Errorf("%g away from the minimum", d)
+	}
+	if i := still.Report.Inertia; !i.Known || i.Index != 0 {
+		t.Errorf("inertia %+v, want index 0", i)
+	}
+	for k, r := range low.Reactions {
+		if q := still.Reactions[k]; q.Kind != r.Kind || math.Abs(q.Push-r.Push) > 1e-8 || r.Push == 0 {
+			t.Errorf("reaction %v, of the minimum %v", q, r)
+		}
+	}
+	if len(low.Reactions) != 2 {
+		t.Errorf("%d reactions, want 2", len(low.Reactions))
 	}
 }

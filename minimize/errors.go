@@ -20,7 +20,7 @@ func (e *NotConverged) Unwrap() error { return e.Cause }
 
 // A Refusal is the error of a problem that the solver cannot be asked to solve.
 type Refusal struct {
-	Problem string // least residual, minimum
+	Problem string // least residual, minimum, stationary, saddle
 	Why     string // what is refused and what would be right
 	Cause   error  // a *action.NoActionError, if losses or open ends are why
 }

@@ -42,23 +42,24 @@ func (c *cholesky) Solve(dst, b []float64) { c.factor.Solve(dst, b) }
 // factoriser returns the factoriser of a pattern, bordered by the linear
 // conditions if there are any, or a *TooLarge.
 func (p *problem) factoriser(pattern *nested.Pattern, suggestion string) (factoriser, error) {
-	var f factoriser
-	var symbolic *nested.Symbolic
 	if rows := append(slices.Clone(p.free.HardRows()), p.free.SoftRows()...); len(rows) > 0 {
-		b, err := newBordered(pattern, rows)
-		if err != nil {
-			return nil, err
+		for k := range rows {
+			rows[k].Precision /= p.unit
 		}
-		if p.bounds != nil {
-			b.held = p.bounds.active
-		}
-		f, symbolic = b, b.symbolic
-	} else {
-		s, err := nested.Analyse(*pattern)
-		if err != nil {
-			return nil, fmt.Errorf("minimize: %w", err)
-		}
-		f, symbolic = &cholesky{symbolic: s}, s
+		return p.bordering(pattern, rows, suggestion)
+	}
+	symbolic, err := p.symbolic(pattern, suggestion)
+	if err != nil {
+		return nil, err
+	}
+	return &cholesky{symbolic: symbolic}, nil
+}
+
+// symbolic returns the analysis of a pattern, or a *TooLarge.
+func (p *problem) symbolic(pattern *nested.Pattern, suggestion string) (*nested.Symbolic, error) {
+	symbolic, err := nested.Analyse(*pattern)
+	if err != nil {
+		return nil, fmt.Errorf("minimize: %w", err)
 	}
 	size := symbolic.Stats()
 	if float64(size.Bytes) > p.set.Memory || size.Flops > p.set.Work {
@@ -68,7 +69,7 @@ func (p *problem) factoriser(pattern *nested.Pattern, suggestion string) (factor
 		}
 	}
 	p.rep.Front = size.LargestFront
-	return f, nil
+	return symbolic, nil
 }
 
 // singular says where a factorisation failed.

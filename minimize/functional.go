@@ -36,7 +36,11 @@ type signed interface{ Signature() action.Signature }
 
 var (
 	_ Functional = (*action.Discrete)(nil)
+	_ Functional = (*action.Shaped)(nil)
+	_ Functional = (*action.Cells)(nil)
+	_ Functional = (*action.NoisyFlow)(nil)
 	_ signed     = (*action.Discrete)(nil)
+	_ signed     = (*action.Shaped)(nil)
 )
 
 // given returns f, or nil if it is an action that is nil.

@@ -13,7 +13,7 @@ import (
 // LeastResidual finds a history that satisfies the conditions exactly and the
 // field equation as well as it can: it minimises the cost
 //
-//	C = Σ hk r²/2q²
+//	C = Σ hk r²/2q² + what the soft conditions cost
 //
 // over the free values, r being the residual of the field equation per hk
 // (action.Discrete.Residual) at every event of every interior slice, pinned
@@ -35,6 +35,8 @@ import (
 // Quart. Appl. Math. 2, 164; Marquardt 1963, J. SIAM 11, 431; Nielsen 1999,
 // IMM-REP-1999-05; Transtrum & Sethna 2012, arXiv:1201.5885]
 //
+// Settings.Strategy says how the solve comes near a solution before that.
+//
 // The start history is adjusted to the conditions first and is not changed. nil
 // conditions hold nothing, nil settings are the defaults.
 //
@@ -48,14 +50,20 @@ func LeastResidual(ctx context.Context, s *action.Discrete, held *constraint.Set
 	if err != nil {
 		return nil, err
 	}
-	if t := p.free.Tally(); t != (constraint.Tally{}) {
-		return nil, &Refusal{Problem: problemResidual, Why: fmt.Sprintf("%d soft and %d linear conditions and %d bounds; the least residual takes pins and rates so far, ask for the minimum of an action", t.Terms, t.Hard+t.Soft, t.Bounded)}
+	if p.bounds != nil {
+		return nil, &Refusal{Problem: problemResidual, Why: "bounds; they belong to the minimum of an action"}
 	}
+	p.unit = p.hk / (p.set.ResidualScale * p.set.ResidualScale)
 	l, err := newLeast(p, s)
 	if err != nil {
 		return nil, err
 	}
-	return l.solve(ctx)
+	l.rep.Before, l.rep.CostBefore = l.norm(l.res.Data, l.normal.rows), l.cost(l.sum)
+	if err := l.prepare(ctx); err != nil {
+		return nil, err
+	}
+	found, err := l.solve(ctx)
+	return l.again(ctx, held, start, set, found, err)
 }
 
 // least is a least-residual problem being solved.
@@ -69,40 +77,57 @@ type least struct {
 	grad, size    []float64      // Jᵀr and Σ|Jr|
 	damped        []float64      // values of JᵀJ + λ
 	delta, curved []float64      // the step without and with its curvature
-	sum           float64        // Σ r²
+	soft          bool           // the cost has terms beside the residual
+	extra         *field.History // gradient or curvature of those
+	sum           float64        // 2C/unit: Σ r², and the soft conditions
+	lifted        map[int]bool   // rows left out
+	exact         bool           // h comes from the march
 }
 
 func newLeast(p *problem, s *action.Discrete) (*least, error) {
 	l := &least{problem: p, s: s}
-	rows, err := l.rows()
-	if err != nil {
+	if err := l.begin(); err != nil {
 		return nil, err
 	}
-	l.res = s.Residual(nil, p.h)
-	if n := p.norm(l.res.Data, rows); math.IsNaN(n.Max-n.Max) || math.IsInf(l.squares(l.res.Data, rows), 0) {
-		return nil, fmt.Errorf("minimize: residual of the start history is %v at %v; want a start for which the equation can be evaluated", n.Max, n.At)
-	}
-	l.trialRes = l.res.Clone()
-	l.jac = s.ResidualJacobian(nil, p.h)
-	l.normal = newNormal(l.jac, rows, p.free, p.grid())
+	var err error
 	if l.solver, err = p.factoriser(l.normal.pattern, "want a smaller block or higher limits in the settings"); err != nil {
 		return nil, err
 	}
-	for _, v := range []*[]float64{&l.grad, &l.size, &l.delta, &l.curved} {
+	for _, v := range []*[]float64{&l.delta, &l.curved} {
 		*v = make([]float64, p.free.N)
 	}
 	l.damped = make([]float64, len(l.normal.values))
-	l.sum = l.squares(l.res.Data, rows)
-	p.rep.Rows = len(rows)
 	p.rep.Method = fmt.Sprintf("Levenberg–Marquardt, nested-dissection Cholesky, q = %g", p.set.ResidualScale)
-	p.rep.Push = "∂cost/∂φ at the event, the multiplier of the pin"
 	return l, nil
+}
+
+// begin evaluates the residual of the start.
+func (l *least) begin() error {
+	rows, err := l.rows()
+	if err != nil {
+		return err
+	}
+	l.res = l.s.Residual(nil, l.h)
+	if n := l.norm(l.res.Data, rows); math.IsNaN(n.Max-n.Max) || math.IsInf(l.squares(l.res.Data, rows), 0) {
+		return fmt.Errorf("minimize: residual of the start history is %v at %v; want a start for which the equation can be evaluated", n.Max, n.At)
+	}
+	l.trialRes = l.res.Clone()
+	l.jac = l.s.ResidualJacobian(nil, l.h)
+	l.normal = newNormal(l.jac, rows, l.free, l.grid())
+	l.grad, l.size = make([]float64, l.free.N), make([]float64, l.free.N)
+	if t := l.free.Tally(); t.Terms+t.Soft > 0 {
+		l.soft, l.extra = true, l.res.Clone()
+	}
+	l.sum = l.total(l.h, l.res)
+	l.rep.Rows = len(rows)
+	l.rep.Push = "∂cost/∂φ at the event, the multiplier of the pin"
+	return nil
 }
 
 // rows returns the events with a field equation that is not lifted.
 func (l *least) rows() ([]int32, error) {
 	b := l.s.Block()
-	lifted := make(map[int]bool)
+	l.lifted = make(map[int]bool)
 	for _, at := range l.set.Lifted {
 		n, i, err := b.Index(at)
 		if err != nil {
@@ -116,12 +141,12 @@ func (l *least) rows() ([]int32, error) {
 			if k, _ := l.free.At(e); k >= 0 {
 				return nil, fmt.Errorf("minimize: lifted row at %v, where component %d is free; want a pinned event", at, c)
 			}
-			lifted[e] = true
+			l.lifted[e] = true
 		}
 	}
 	var rows []int32
 	for e := range l.h.Data {
-		if n, _, i := l.h.Place(e); l.equation(n, i) && !lifted[e] {
+		if n, _, i := l.h.Place(e); l.equation(n, i) && !l.lifted[e] {
 			rows = append(rows, int32(e))
 		}
 	}
@@ -144,22 +169,64 @@ func (l *least) squares(r []float64, rows []int32) float64 {
 	return sum
 }
 
-// cost returns Σ hk r²/2q² for Σ r².
-func (l *least) cost(sum float64) float64 {
-	return 0.5 * l.hk * sum / (l.set.ResidualScale * l.set.ResidualScale)
+// total returns 2C/unit of the history h, whose residual is r.
+func (l *least) total(h, r *field.History) float64 {
+	sum := l.squares(r.Data, l.normal.rows)
+	if l.soft {
+		sum += 2 * l.free.Cost(h) / l.unit
+	}
+	return sum
 }
 
-// linearise evaluates Jacobian, normal matrix and gradient at h.
+// cost returns C for the total 2C/unit.
+func (l *least) cost(sum float64) float64 { return 0.5 * l.unit * sum }
+
+// linearise evaluates Jacobian, gradient and normal matrix at h.
 func (l *least) linearise() {
-	l.jac = l.s.ResidualJacobian(l.jac, l.h)
-	l.normal.assemble(l.jac)
-	l.normal.gradient(l.grad, l.size, l.jac, l.res.Data)
+	l.differentiate()
+	l.assemble()
 }
 
-// flat returns the largest |Jᵀr| over its size before cancellation.
+// differentiate evaluates Jacobian and gradient at h, soft conditions included.
+func (l *least) differentiate() {
+	l.jac = l.s.ResidualJacobian(l.jac, l.h)
+	l.normal.gradient(l.grad, l.size, l.jac, l.res.Data)
+	if !l.soft {
+		return
+	}
+	clear(l.extra.Data)
+	l.free.AddGradient(l.extra, l.h)
+	for u, g := range l.free.Reduce(nil, l.extra) {
+		l.grad[u] += g / l.unit
+		l.size[u] += math.Abs(g) / l.unit
+	}
+}
+
+// assemble writes the normal matrix of the Jacobian at hand, with the curvature
+// of soft conditions where it is positive. Soft linear conditions border the
+// matrix.
+func (l *least) assemble() {
+	l.normal.assemble(l.jac)
+	if !l.soft {
+		return
+	}
+	clear(l.extra.Data)
+	l.free.AddCurvature(l.extra, l.h)
+	for u, c := range l.free.Reduce(nil, l.extra) {
+		l.normal.values[l.normal.diagonal[u]] += max(0, c) / l.unit
+	}
+}
+
+// flat returns the largest gradient of the cost, less what hard linear
+// conditions take up, over its size before cancellation.
 func (l *least) flat() float64 {
 	var g, size float64
-	for u, v := range l.grad {
+	grad := l.grad
+	if l.hard != nil {
+		grad = make([]float64, len(l.grad))
+		l.hard.tangent(grad, l.grad, l.hard.multipliers(l.grad))
+	}
+	for u, v := range grad {
 		g, size = max(g, math.Abs(v)), max(size, l.size[u])
 	}
 	if size == 0 {
@@ -196,11 +263,11 @@ func (l *least) try(lambda float64) (sum, predicted float64) {
 	return l.evaluate(l.delta), predicted
 }
 
-// evaluate moves the trial to h + δ and returns Σ r² there.
+// evaluate moves the trial to h + δ and returns the total there.
 func (l *least) evaluate(delta []float64) float64 {
 	l.move(delta)
 	l.trialRes = l.s.Residual(l.trialRes, l.trial)
-	return l.squares(l.trialRes.Data, l.normal.rows)
+	return l.total(l.trial, l.trialRes)
 }
 
 // accept makes the trial the best history.
@@ -232,7 +299,6 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 	}
 	l.linearise()
 	l.measure()
-	l.rep.Before, l.rep.CostBefore = l.rep.After, l.rep.CostAfter
 	first := l.set.Damping
 	if first == 0 {
 		first = 1e-6
@@ -259,10 +325,18 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 		}
 		sum, predicted := l.try(d.lambda)
 		step := Step{Damping: d.lambda / (l.set.ResidualScale * l.set.ResidualScale), Gain: (l.sum - sum) / predicted}
-		if step.Accepted = sum < l.sum; step.Accepted {
+		switch blind := predicted < 1e-12*l.sum; {
+		case blind:
+			if step.Accepted = l.flatter(sum); step.Accepted {
+				step.Gain = 1
+			}
+		case sum < l.sum:
+			step.Accepted = true
 			l.accept(sum)
 			l.linearise()
 			l.measure()
+		}
+		if step.Accepted {
 			d.accepted(step.Gain)
 		} else {
 			d.rejected()
@@ -272,9 +346,26 @@ func (l *least) solve(ctx context.Context) (*Found, error) {
 	}
 }
 
+// flatter makes the trial, whose total is sum, the best history if the gradient
+// of the cost is flatter there. It judges steps where the cost no longer tells
+// histories apart.
+func (l *least) flatter(sum float64) bool {
+	before, total := l.rep.Flat, l.sum
+	l.accept(sum)
+	l.linearise()
+	l.measure()
+	if l.rep.Flat < before {
+		return true
+	}
+	l.accept(total) // which swaps them back
+	l.linearise()
+	l.measure()
+	return false
+}
+
 // solved reports whether the history is a solution, and why.
 func (l *least) solved() (done bool, reason string) {
-	if l.rep.After.Max <= l.rep.Tolerance {
+	if l.rep.After.Max <= l.rep.Tolerance && !l.soft {
 		return true, "residual within the tolerance"
 	}
 	if l.rep.Flat <= l.set.Flatness {
@@ -287,7 +378,7 @@ func (l *least) solved() (done bool, reason string) {
 // they halve the largest residual.
 func (l *least) polish(ctx context.Context, d *damping, reason string) (*Found, error) {
 	d.lambda = d.least
-	if l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.factor(d.lambda) != nil {
+	if l.soft || l.rep.After.Max > l.rep.Tolerance || l.rep.After.Max == 0 || l.exact && l.rep.Iterations == 0 || l.factor(d.lambda) != nil {
 		return l.finish(Converged, reason, nil)
 	}
 	const most = 20
@@ -323,8 +414,15 @@ func (l *least) finish(status Status, reason string, cause error) (*Found, error
 	r := l.trialRes.Data
 	clear(r)
 	for _, e := range l.normal.rows {
-		r[e] = l.res.Data[e] * l.hk / (l.set.ResidualScale * l.set.ResidualScale)
+		r[e] = l.res.Data[e] * l.unit
 	}
 	l.jac.MulTransVec(push.Data, r)
-	return l.end(status, reason, cause, push, constraint.Multipliers{})
+	if l.soft {
+		l.free.AddGradient(push, l.h)
+	}
+	var by constraint.Multipliers
+	if l.hard != nil {
+		by.Rows = l.hard.multipliers(l.free.Reduce(nil, push))
+	}
+	return l.end(status, reason, cause, push, by)
 }

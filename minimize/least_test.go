@@ -262,7 +262,7 @@ func TestLeastResidualStops(t *testing.T) {
 	defer cancel()
 	var log bytes.Buffer
 	frames := 0
-	found, err := LeastResidual(ctx, s, held, start, &Settings{Progress: &log, Trace: true, Watch: func(st Step, h *field.History) {
+	found, err := LeastResidual(ctx, s, held, start, &Settings{Strategy: BlockWide, Progress: &log, Trace: true, Watch: func(st Step, h *field.History) {
 		if frames++; st.Iteration == 2 {
 			cancel()
 		}
@@ -285,7 +285,7 @@ func TestLeastResidualStops(t *testing.T) {
 		t.Errorf("reported residual %v, that of the history %v", r.After.Max, res)
 	}
 
-	found, err = LeastResidual(context.Background(), s, held, start, &Settings{Iterations: 1})
+	found, err = LeastResidual(context.Background(), s, held, start, &Settings{Strategy: BlockWide, Iterations: 1})
 	if !errors.As(err, &failed) || found.Report.Status != Stopped || !strings.Contains(err.Error(), "limit of 1 steps") {
 		t.Errorf("%v", err)
 	}

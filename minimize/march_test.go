@@ -94,7 +94,7 @@ func TestCauchyPairGivesTheMarch(t *testing.T) {
 		t.Run(tc.name, func(t *testing.T) {
 			s := newAction(t, clock, tc.line, tc.wave)
 			want := marched(s, tc.start.On(tc.line, clock.From))
-			found, err := LeastResidual(context.Background(), s, pairOf(want), field.Repeat(s.Block(), want.Slice(0)), nil)
+			found, err := LeastResidual(context.Background(), s, pairOf(want), field.Repeat(s.Block(), want.Slice(0)), &Settings{Strategy: BlockWide})
 			if err != nil {
 				t.Fatal(err)
 			}
@@ -123,7 +123,7 @@ func TestTwoComponentsGiveTheMarch(t *testing.T) {
 	copy(st.Rate.Component(0), a.Rate.Data)
 	copy(st.Rate.Component(1), b.Rate.Data)
 	want := marched(s, st)
-	found, err := LeastResidual(context.Background(), s, pairOf(want), field.Repeat(s.Block(), st.Field), nil)
+	found, err := LeastResidual(context.Background(), s, pairOf(want), field.Repeat(s.Block(), st.Field), &Settings{Strategy: BlockWide})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -160,7 +160,7 @@ func TestColdStartOnLargeBlock(t *testing.T) {
 			tc.wave.Potential = action.SineGordon{}
 			s := newAction(t, clock, line, tc.wave)
 			want := marched(s, tc.start.On(line, clock.From))
-			found, err := LeastResidual(context.Background(), s, pairOf(want), field.Repeat(s.Block(), want.Slice(0)), nil)
+			found, err := LeastResidual(context.Background(), s, pairOf(want), field.Repeat(s.Block(), want.Slice(0)), &Settings{Strategy: BlockWide})
 			if err != nil {
 				t.Fatal(err)
 			}

@@ -26,6 +26,12 @@ import (
 // positive definite. [Nocedal & Wright 2006, Numerical Optimization, chapters 3,
 // 7]
 //
+// Bounds want Newton's method. Each step solves for the values that are not held
+// against a bound, is cut at the bounds, and is followed by sweeps of projected
+// Gauss–Seidel over the model, which find most of what is held next. [Bertsekas
+// 1982, SIAM J. Control Optim. 20, 221; Gräser & Kornhuber 2009, J. Comput. Math.
+// 27, 1]
+//
 // A Lorentzian density, whose stationary histories are saddles, is refused with
 // a *Refusal. The start history is adjusted to the conditions first and is not
 // changed. nil conditions hold nothing, nil settings are the defaults.
@@ -38,18 +44,66 @@ import (
 // at E would need to hold the field there.
 func Minimum(ctx context.Context, f Functional, held *constraint.Set, start *field.History, set *Settings) (*Found, error) {
 	if f = given(f); f != nil {
-		if err := f.Conservative(); err != nil {
-			why := err.Error()
-			if part := (*action.NoActionError)(nil); errors.As(err, &part) {
-				why = part.Part + " does not come from an action; ask for the least residual"
-			}
-			return nil, &Refusal{Problem: problemMinimum, Why: why, Cause: err}
+		if err := conservative(problemMinimum, f); err != nil {
+			return nil, err
 		}
-		if g, ok := f.(signed); ok && g.Signature() != action.Euclidean {
-			return nil, &Refusal{Problem: problemMinimum, Why: "the density is Lorentzian, whose stationary histories are saddles; want the Euclidean signature, or ask for the least residual"}
+		if err := refuseLorentzian(problemMinimum, f); err != nil {
+			return nil, err
 		}
 	}
-	p, err := newProblem(problemMinimum, f, held, start, set)
+	m, err := newMinimum(problemMinimum, f, held, start, set)
+	if err != nil {
+		return nil, err
+	}
+	if m.set.Method == LBFGS && (m.hard != nil || m.bounds != nil) {
+		return nil, &Refusal{Problem: problemMinimum, Why: "L-BFGS with hard linear conditions or bounds; want Newton"}
+	}
+	if m.set.Method != LBFGS {
+		err := m.analyse()
+		if err == nil {
+			return m.newton(ctx)
+		}
+		if large := (*TooLarge)(nil); m.set.Method == Newton || m.hard != nil || m.bounds != nil || !errors.As(err, &large) {
+			return nil, err
+		}
+		m.hess = nil
+		m.rep.Method = "L-BFGS, because the factor would exceed the limits, then Newton–conjugate gradients"
+	} else {
+		m.rep.Method = "L-BFGS, then Newton–conjugate gradients"
+	}
+	return m.lbfgs(ctx)
+}
+
+// conservative returns a *Refusal unless the equation comes from an action.
+func conservative(problem string, f Functional) error {
+	err := f.Conservative()
+	if err == nil {
+		return nil
+	}
+	why := err.Error()
+	if part := (*action.NoActionError)(nil); errors.As(err, &part) {
+		why = part.Part + " does not come from an action; ask for the least residual"
+	}
+	return &Refusal{Problem: problem, Why: why, Cause: err}
+}
+
+// minimum is a minimum problem, or another with ∂S/∂φ = 0, being solved.
+type minimum struct {
+	*problem
+	leads             []int32
+	second            *action.Matrix
+	hess              *hessian // nil without a factorisation
+	solver            factoriser
+	slope, trialSlope *field.History // ∂S/∂φ of h and trial
+	grad, trialGrad   []float64      // the same by the unknowns
+	pure, x           []float64      // gradient without what conditions take up; unknowns
+	value             float64        // S of h
+	damped, delta     []float64
+}
+
+// newMinimum evaluates the action and its derivatives at the start.
+func newMinimum(name string, f Functional, held *constraint.Set, start *field.History, set *Settings) (*minimum, error) {
+	p, err := newProblem(name, f, held, start, set)
 	if err != nil {
 		return nil, err
 	}
@@ -73,37 +127,7 @@ func Minimum(ctx context.Context, f Functional, held *constraint.Set, start *fie
 	if n := m.rep.Before; math.IsNaN(n.Max-n.Max) || math.IsNaN(m.value-m.value) {
 		return nil, fmt.Errorf("minimize: action of the start history is %v, its gradient %v at %v; want a start for which both can be evaluated", m.value, n.Max, n.At)
 	}
-	if p.set.Method == LBFGS && (p.hard != nil || p.bounds != nil) {
-		return nil, &Refusal{Problem: problemMinimum, Why: "L-BFGS with hard linear conditions or bounds; want Newton"}
-	}
-	if p.set.Method != LBFGS {
-		err := m.analyse()
-		if err == nil {
-			return m.newton(ctx)
-		}
-		if large := (*TooLarge)(nil); p.set.Method == Newton || p.hard != nil || p.bounds != nil || !errors.As(err, &large) {
-			return nil, err
-		}
-		m.hess = nil
-		m.rep.Method = "L-BFGS, because the factor would exceed the limits, then Newton–conjugate gradients"
-	} else {
-		m.rep.Method = "L-BFGS, then Newton–conjugate gradients"
-	}
-	return m.lbfgs(ctx)
-}
-
-// minimum is a minimum problem being solved.
-type minimum struct {
-	*problem
-	leads             []int32
-	second            *action.Matrix
-	hess              *hessian // nil without a factorisation
-	solver            factoriser
-	slope, trialSlope *field.History // ∂S/∂φ of h and trial
-	grad, trialGrad   []float64      // the same by the unknowns
-	pure, x           []float64      // gradient without what conditions take up; unknowns
-	value             float64        // S of h
-	damped, delta     []float64
+	return m, nil
 }
 
 // analyse prepares the factorisation, or returns a *TooLarge.
@@ -199,16 +223,17 @@ func (m *minimum) finish(status Status, reason string, cause error) (*Found, err
 		push.Data[e] = -g
 	}
 	var by constraint.Multipliers
-	mu := m.purify(m.grad, m.h)
+	grad := m.free.Reduce(nil, m.slope)
+	mu := m.purify(grad, m.h)
 	for _, v := range mu {
 		by.Rows = append(by.Rows, -v)
 	}
 	if m.bounds != nil {
 		by.Bounds = make([]float64, m.free.N)
-		rest := m.grad
+		rest := grad
 		if m.hard != nil {
 			rest = make([]float64, m.free.N)
-			m.hard.tangent(rest, m.grad, mu)
+			m.hard.tangent(rest, grad, mu)
 		}
 		for u, active := range m.bounds.active {
 			if active {

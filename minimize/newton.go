@@ -10,6 +10,9 @@ import (
 // then corrections with the undamped factor of the solution.
 func (m *minimum) newton(ctx context.Context) (*Found, error) {
 	m.rep.Method = "damped Newton, nested-dissection Cholesky"
+	if m.bounds != nil {
+		m.rep.Method = "damped Newton on the free part of the bounds, nested-dissection Cholesky"
+	}
 	m.delta, m.damped = make([]float64, m.free.N), make([]float64, len(m.hess.values))
 	limit := m.set.Iterations
 	if limit == 0 {
@@ -99,6 +102,11 @@ func (m *minimum) direction(lambda float64) (predicted float64) {
 		m.bounds.cut(m.delta, m.x)
 	} else {
 		m.bounds.shorten(m.delta, m.x)
+	}
+	if m.hard == nil && len(m.free.SoftRows()) == 0 { // a sweep knows only the grid
+		for range sweeps {
+			m.bounds.sweep(m.hess, lambda, m.grad, m.x, m.delta)
+		}
 	}
 	for u, d := range m.delta {
 		predicted -= m.grad[u] * d

@@ -22,6 +22,7 @@ type problem struct {
 	bounds *bounds // nil without bounds
 	set    Settings
 	hk     float64
+	unit   float64        // of the matrix that is factorised: 1, or hk/q² for the least residual
 	h      *field.History // best history so far; satisfies the conditions
 	trial  *field.History
 	began  time.Time
@@ -63,7 +64,7 @@ func newProblem(name string, f Functional, held *constraint.Set, start *field.Hi
 	if free.N == 0 {
 		return nil, fmt.Errorf("minimize: %s with all %d values held and none free; remove a condition", name, free.Values())
 	}
-	p := &problem{f: f, free: free, set: c, hk: b.Time.Step * b.Space.Step, h: h, began: time.Now()}
+	p := &problem{f: f, free: free, set: c, hk: b.Time.Step * b.Space.Step, unit: 1, h: h, began: time.Now()}
 	if err := p.adjust(); err != nil {
 		return nil, err
 	}
@@ -168,13 +169,16 @@ func (p *problem) step(s Step) {
 // end completes the report. The error is nil only for Converged.
 func (p *problem) end(status Status, reason string, cause error, push *field.History, by constraint.Multipliers) (*Found, error) {
 	p.rep.Status, p.rep.Reason = status, reason
-	p.rep.Wall = time.Since(p.began)
+	p.rep.Wall = p.since()
 	found := &Found{History: p.h, Report: p.rep, Reactions: p.free.ReactionsWith(p.h, push, by), Misfits: p.free.Misfits(p.h)}
 	if status == Converged {
 		return found, nil
 	}
 	return found, &NotConverged{Found: found, Cause: cause}
 }
+
+// since returns the time since the solve began.
+func (p *problem) since() time.Duration { return time.Since(p.began) }
 
 // norm returns the size of values[e] over the given events.
 func (p *problem) norm(values []float64, rows []int32) Norm {

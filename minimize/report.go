@@ -18,7 +18,7 @@ const (
 	Converged Status = iota // solved to the tolerance
 	Stalled                 // no step improves the history any more
 	Stopped                 // iteration limit, or the context ended
-	Singular                // the matrix at the solution is not positive definite
+	Singular                // the matrix at the solution is singular or has the wrong signs
 )
 
 // String returns the status in lower case.
@@ -52,10 +52,17 @@ type Norm struct {
 
 // A Report says what a solve did and how well it ended.
 type Report struct {
-	Problem string // least residual, minimum
+	Problem string // least residual, minimum, stationary, saddle
 	Method  string
-	Status  Status
-	Reason  string // why it ended, in words
+
+	// Strategy is what was asked for or chosen, and Why; Stages is what it did
+	// before the solve for the whole block. Least residual only.
+	Strategy Strategy
+	Why      string
+	Stages   []Stage
+
+	Status Status
+	Reason string // why it ended, in words
 
 	Rows      int // equations
 	Unknowns  int
@@ -63,11 +70,11 @@ type Report struct {
 	Redundant int // conditions that repeat others
 
 	// Norms of the residual r (least residual) or of ∂S/∂φ/hk over the free
-	// events (minimum), at the start history adjusted to the pins and at the
-	// end.
+	// events (all others, without its parts along zero modes held), at the start
+	// history adjusted to the pins and at the end.
 	Before, After Norm
 
-	// The cost Σ hk r²/2q² (least residual), or the action (minimum).
+	// The cost Σ hk r²/2q² (least residual), or the action.
 	CostBefore, CostAfter float64
 
 	// Scale is the largest single term of the equation over the block at the
@@ -87,6 +94,10 @@ type Report struct {
 	Front          int     // order of the largest front; 0 without a factorisation
 	Damping        float64 // last λ
 	Wall           time.Duration
+
+	// Inertia says what kind of stationary point was found. Nil for the least
+	// residual and the minimum, and where a solve ended before it was counted.
+	Inertia *Inertia
 
 	Push  string // what the Push of a Reaction is
 	Trace []Step // if asked for
@@ -115,12 +126,18 @@ func (s Step) String() string {
 // String returns the report as a few lines for a terminal.
 func (r Report) String() string {
 	what, cost := "residual", "cost"
-	if r.Problem == problemMinimum {
+	if !strings.HasSuffix(r.Problem, "residual") {
 		what, cost = "gradient", "action"
 	}
 	var b strings.Builder
 	fmt.Fprintf(&b, "%s: %v (%s)\n", r.Problem, r.Status, r.Reason)
 	fmt.Fprintf(&b, "  method    %s\n", r.Method)
+	if r.Problem == problemResidual {
+		fmt.Fprintf(&b, "  strategy  %v (%s)\n", r.Strategy, r.Why)
+	}
+	for _, s := range r.Stages {
+		fmt.Fprintf(&b, "  stage     %v\n", s)
+	}
 	fmt.Fprintf(&b, "  size      %d equations, %d unknowns, %d values held", r.Rows, r.Unknowns, r.Fixed)
 	if r.Redundant > 0 {
 		fmt.Fprintf(&b, ", %d conditions repeated", r.Redundant)
@@ -135,11 +152,16 @@ func (r Report) String() string {
 		fmt.Fprintf(&b, " (largest front %d)", r.Front)
 	}
 	fmt.Fprintf(&b, ", %.3g s\n", r.Wall.Seconds())
+	if r.Inertia != nil {
+		fmt.Fprintf(&b, "  inertia   %v\n", r.Inertia)
+	}
 	fmt.Fprintf(&b, "  reactions %s", r.Push)
 	return b.String()
 }
 
 const (
-	problemResidual = "least residual"
-	problemMinimum  = "minimum"
+	problemResidual   = "least residual"
+	problemMinimum    = "minimum"
+	problemStationary = "stationary"
+	problemSaddle     = "saddle"
 )

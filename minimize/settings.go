@@ -58,12 +58,40 @@ type Settings struct {
 	// there, which action.Discrete.Residual gives. Least residual only.
 	Lifted []lattice.Event
 
+	// Strategy says how the least residual comes near a solution; Window is the
+	// number of new slices of a window (0 means 16), Nodes the number of slice
+	// pairs from which shooting marches (0 means 1; more is multiple shooting).
+	Strategy Strategy
+	Window   int
+	Nodes    int
+
 	// Method, Memory (bytes) and Work (floating-point operations of one
 	// factorisation) choose how Minimum solves. Memory and Work limit the
 	// factor of the least residual, too. 0 means 4e9 bytes and 4e12 operations.
 	Method Method
 	Memory float64
 	Work   float64
+
+	// ZeroModes are directions in which Stationary and Saddle do not go: the
+	// outcome differs from the start, adjusted to the conditions, by nothing that
+	// overlaps with any of them, ∫ a (φ − φ_start) dx dt = 0. Their values at fixed
+	// events do not matter.
+	ZeroModes []*field.History
+
+	// Shifts holds translations in the same way, their directions being the
+	// slopes, along an axis, of the start history adjusted to the conditions.
+	// Stationary and Saddle only.
+	Shifts Shift
+
+	// MinimumNorm accepts a stationary point with a singular second variation:
+	// of a block with many answers the one nearest to the start, in the sense of
+	// ∫ (φ − φ_start)² dx dt, counts as converged. Stationary only.
+	MinimumNorm bool
+
+	// Reference, if not nil, is a history on the block whose Morse index,
+	// under the same conditions, Stationary and Saddle count as well. It need
+	// neither be stationary nor satisfy the conditions.
+	Reference *field.History
 
 	// Progress, if not nil, gets one line for every trial step.
 	Progress io.Writer
@@ -98,6 +126,12 @@ func (s *Settings) with() (Settings, error) {
 	if c.Iterations < 0 {
 		return c, fmt.Errorf("minimize: %d iterations in the settings; want a number ≥ 0 (0 for the default)", c.Iterations)
 	}
+	if c.Window < 0 || c.Nodes < 0 {
+		return c, fmt.Errorf("minimize: windows of %d slices and %d nodes in the settings; want numbers ≥ 0 (0 for the default)", c.Window, c.Nodes)
+	}
+	if c.Strategy > Dragging {
+		return c, fmt.Errorf("minimize: %v in the settings; want one from Fitting to Dragging", c.Strategy)
+	}
 	if c.Method > LBFGS {
 		return c, fmt.Errorf("minimize: %v in the settings; want Auto, Newton or LBFGS", c.Method)
 	}
@@ -110,5 +144,11 @@ func (s *Settings) with() (Settings, error) {
 	set(&c.ResidualScale, 1)
 	set(&c.Memory, 4e9)
 	set(&c.Work, 4e12)
+	if c.Window == 0 {
+		c.Window = 16
+	}
+	if c.Nodes == 0 {
+		c.Nodes = 1
+	}
 	return c, nil
 }

@@ -114,3 +114,19 @@ func TestWrongInput(t *testing.T) {
 		t.Errorf("%v", err)
 	}
 }
+
+func TestMinimumRefusesALorentzianRegion(t *testing.T) {
+	b := lattice.Block{Time: lattice.Axis{Step: 1, Sites: 4}, Space: lattice.Axis{Step: 1, Sites: 4}}
+	r, err := lattice.NewRegion(b, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	s, err := action.NewShaped(r, action.Wave{Potential: action.Mass(1)})
+	if err != nil {
+		t.Fatal(err)
+	}
+	var refusal *Refusal
+	if _, err := Minimum(context.Background(), s, nil, field.NewHistory(b, 1), nil); !errors.As(err, &refusal) || !strings.Contains(refusal.Why, "Lorentzian") {
+		t.Errorf("got %v, want a *Refusal that says Lorentzian", err)
+	}
+}

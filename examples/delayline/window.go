@@ -52,11 +52,12 @@ func (d delayLine) solveWindow(ctx context.Context, f *flight) (*window, error) 
 		return nil, err
 	}
 
-	// The conditions are the first two slices; the start knows the first only.
+	// The conditions are the first two slices; the start knows the first only,
+	// and nothing may be marched.
 	held := constraint.On(block)
 	held.Slice(0, run.History.Slice(0))
 	held.Slice(1, run.History.Slice(1))
-	found, err := minimize.LeastResidual(ctx, s, held, field.Repeat(block, run.History.Slice(0)), nil)
+	found, err := minimize.LeastResidual(ctx, s, held, field.Repeat(block, run.History.Slice(0)), &minimize.Settings{Strategy: minimize.BlockWide})
 	if err != nil {
 		return nil, fmt.Errorf("all at once: %w", err)
 	}

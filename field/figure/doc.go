@@ -1,5 +1,5 @@
 // Package figure draws fields: space-time maps, profiles and time series, ready
-// for print.
+// for print, and animations of them for the screen.
 //
 // # Three figures
 //
@@ -11,6 +11,20 @@
 // Each is a struct whose zero value, given something to draw, makes a complete
 // figure. Save writes it as PNG, PDF or SVG by the extension of the path; Encode
 // writes it to an io.Writer.
+//
+// # Two animations
+//
+//	Animation  histories on one block, such as the steps of a relaxation, as maps
+//	           with the same colours, each with a caption
+//	Motion     a history slice by slice: the curve φ(x) and its time
+//
+// They are written as animated GIF, of 630 × 433 pixels unless the [Page] says
+// otherwise. The page with its axes, legend and colour bar is drawn once, and a
+// frame holds only the rectangle that changes, so that nothing else can flicker.
+// One palette serves all frames: 127 levels of a map, or tints of the lines, and
+// greys; there is no dithering. A hundred maps of a relaxation make a file of about
+// 2 MB, waves all over the block up to four times as much, and a hundred curves
+// 0.3 MB.
 //
 // # Text
 //
@@ -31,7 +45,8 @@
 // is linear in the value, so that it survives grey-scale print. Curves take the
 // eight colours of [Okabe & Ito 2002, Color Universal Design], yellow left out,
 // each with a dash pattern of its own. Values that are NaN or infinite are drawn
-// in a green that neither colour map contains, and the legend says so.
+// in a green that neither colour map contains, and the legend says so. What is not
+// in the Region of a map is left blank.
 //
 // # Large histories
 //

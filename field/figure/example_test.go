@@ -3,9 +3,11 @@ package figure_test
 import (
 	"bytes"
 	"fmt"
+	"image/gif"
 	"image/png"
 	"log"
 	"math"
+	"time"
 
 	"github.com/tenter-go/tenter/field"
 	"github.com/tenter-go/tenter/field/figure"
@@ -51,6 +53,77 @@ func ExampleMap() {
 	fmt.Println(size.Width, "×", size.Height)
 	// Output:
 	// 945 × 650
+}
+
+// A membrane on a square frame relaxes from a bump to rest.
+func ExampleAnimation() {
+	side := lattice.Axis{From: -1, Step: 0.05, Sites: 41}
+	block, err := lattice.NewBlock(side, side)
+	if err != nil {
+		log.Fatal(err)
+	}
+	a := figure.Animation{
+		Title:      "Relaxation of a membrane",
+		XLabel:     "x (m)",
+		TLabel:     "y (m)",
+		ValueLabel: "height φ (mm)",
+		Page:       figure.Page{Width: 140, Height: 120},
+	}
+	for k := range 20 {
+		tau := 0.05 * float64(k)
+		lowest := field.Profile(func(x, y float64) (value, rate float64) {
+			return math.Exp(-math.Pi*math.Pi/2*tau) * math.Cos(math.Pi/2*x) * math.Cos(math.Pi/2*y), 0
+		})
+		a.Frames = append(a.Frames, figure.Frame{
+			History: lowest.Over(block),
+			Caption: fmt.Sprintf("τ = %.2f", tau),
+		})
+	}
+	var file bytes.Buffer
+	if err := a.Encode(&file); err != nil { // or a.Save("membrane.gif")
+		log.Fatal(err)
+	}
+	film, err := gif.DecodeAll(&file)
+	if err != nil {
+		log.Fatal(err)
+	}
+	fmt.Println(len(film.Image), "frames of", film.Config.Width, "×", film.Config.Height)
+	// Output:
+	// 20 frames of 551 × 472
+}
+
+// A kink passes through an antikink, every fourth slice a frame.
+func ExampleMotion() {
+	block, err := lattice.NewBlock(
+		lattice.Axis{From: -10, Step: 0.25, Sites: 81},
+		lattice.Axis{From: -15, Step: 0.1, Sites: 301},
+	)
+	if err != nil {
+		log.Fatal(err)
+	}
+	pair, err := field.SineGordonKinkAntikink(field.Collision{Speed: 0.6})
+	if err != nil {
+		log.Fatal(err)
+	}
+	m := figure.Motion{
+		History:    pair.Over(block),
+		Every:      4,
+		XLabel:     "x (λ_J)",
+		ValueLabel: "φ (rad)",
+		TimeUnit:   "1/ω_p",
+		Delay:      80 * time.Millisecond,
+	}
+	var file bytes.Buffer
+	if err := m.Encode(&file); err != nil { // or m.Save("pair.gif")
+		log.Fatal(err)
+	}
+	film, err := gif.DecodeAll(&file)
+	if err != nil {
+		log.Fatal(err)
+	}
+	fmt.Println(len(film.Image), "frames, of", 10*film.Delay[0], "ms each")
+	// Output:
+	// 21 frames, of 80 ms each
 }
 
 func ExampleSeries() {

@@ -21,6 +21,7 @@ import (
 type Map struct {
 	History   *field.History
 	Component int
+	Region    *lattice.Region // its other events are left blank; nil shows them all
 
 	Title                      string
 	XLabel, TLabel, ValueLabel string // default "x", "t", "φ"; write the unit in them
@@ -54,44 +55,69 @@ func (m Map) Save(path string) error { return save(path, m.Page, m) }
 func (m Map) Encode(w io.Writer, format string) error { return encode(w, format, m.Page, m) }
 
 func (m Map) draw(c draw.Canvas, dpi float64) error {
-	_, err := m.drawOn(c, dpi)
-	return err
+	if m.History == nil {
+		return fmt.Errorf("map without a history")
+	}
+	if _, err := m.drawOn(c, dpi); err != nil {
+		return fmt.Errorf("map: %w", err)
+	}
+	return nil
 }
 
 // drawOn draws the map on c and returns the area of the data.
 func (m Map) drawOn(c draw.Canvas, dpi float64) (data draw.Canvas, err error) {
-	s, whole, err := m.shade()
+	l := layer{m.History, m.Component, m.Region}
+	if err := l.check(); err != nil {
+		return data, err
+	}
+	low, high, whole := l.extent()
+	if low > high {
+		return data, fmt.Errorf("component %d has no finite value among its %d", m.Component, m.History.Block.Slices()*m.History.Block.Sites())
+	}
+	s, err := m.shade(low, high, smooth)
 	if err != nil {
 		return data, err
 	}
+	sh, b, err := m.layout(c.Size().Y, s, whole)
+	if err != nil {
+		return data, err
+	}
+	sh.plotters = append([]plot.Plotter{picture{l, s, dpi}}, m.strokes()...)
+	if data, err = sh.draw(c); err != nil {
+		return data, err
+	}
+	m.drawPins(data, sh.x, sh.y)
+	return data, b.draw(data)
+}
+
+// layout returns what stands around the data, on a page of the given height; whole
+// says that all values are finite.
+func (m Map) layout(height vg.Length, s *shade, whole bool) (sh sheet, b bar, err error) {
 	x, err := cells(m.History.Block.Space)
 	if err != nil {
-		return data, fmt.Errorf("map: space axis: %w", err)
+		return sh, b, fmt.Errorf("space axis: %w", err)
 	}
 	t, err := cells(m.History.Block.Time)
 	if err != nil {
-		return data, fmt.Errorf("map: time axis: %w", err)
+		return sh, b, fmt.Errorf("time axis: %w", err)
 	}
 	label := or(m.ValueLabel, "φ")
 	if err := checkText("value label", label); err != nil {
-		return data, err
+		return sh, b, err
 	}
-	b := newBar(s, label)
-	sh := sheet{title: m.Title, xLabel: or(m.XLabel, "x"), yLabel: or(m.TLabel, "t"), x: x, y: t}
-	sh.right = b.width(c.Size().Y)
-	sh.plotters = append(sh.plotters, picture{m.History, m.Component, s, dpi})
+	b = newBar(s, label)
+	sh = sheet{title: m.Title, xLabel: or(m.XLabel, "x"), yLabel: or(m.TLabel, "t"), x: x, y: t, right: b.width(height)}
 	for i, curve := range m.Curves {
 		if err := curve.check(i); err != nil {
-			return data, fmt.Errorf("map: %w", err)
+			return sh, b, err
 		}
-		sh.plotters = append(sh.plotters, stroke{curve, onMap(i), true})
 		if curve.Label != "" {
 			sh.entries = append(sh.entries, lineEntry(curve.Label, onMap(i)))
 		}
 	}
 	for i, pin := range m.Pins {
 		if !(pin.X >= x[0] && pin.X <= x[1] && pin.T >= t[0] && pin.T <= t[1]) {
-			return data, fmt.Errorf("map: pin %d at %v; want x from %g to %g and t from %g to %g", i, pin, x[0], x[1], t[0], t[1])
+			return sh, b, fmt.Errorf("pin %d at %v; want x from %g to %g and t from %g to %g", i, pin, x[0], x[1], t[0], t[1])
 		}
 	}
 	if len(m.Pins) > 0 {
@@ -102,54 +128,48 @@ func (m Map) drawOn(c draw.Canvas, dpi float64) (data draw.Canvas, err error) {
 			c.FillPolygon(notFinite, []vg.Point{c.Min, {X: c.Max.X, Y: c.Min.Y}, c.Max, {X: c.Min.X, Y: c.Max.Y}})
 		}})
 	}
-	if data, err = sh.draw(c); err != nil {
-		return data, fmt.Errorf("map: %w", err)
-	}
-	places := make([]vg.Point, len(m.Pins))
-	for i, pin := range m.Pins {
-		places[i] = vg.Point{X: data.X((pin.X - x[0]) / (x[1] - x[0])), Y: data.Y((pin.T - t[0]) / (t[1] - t[0]))}
-	}
-	drawPins(data, places)
-	if err := b.draw(data); err != nil {
-		return data, fmt.Errorf("map: %w", err)
-	}
-	return data, nil
+	return sh, b, nil
 }
 
-// shade returns the colours of the map and whether all values are finite.
-func (m Map) shade() (s *shade, whole bool, err error) {
-	h := m.History
-	if h == nil {
-		return nil, false, fmt.Errorf("map without a history")
-	}
-	if want := h.Block.Slices() * h.Components * h.Block.Sites(); want == 0 || len(h.Data) != want {
-		return nil, false, fmt.Errorf("map: history of %d values for %d slices × %d components × %d sites", len(h.Data), h.Block.Slices(), h.Components, h.Block.Sites())
-	}
-	if m.Component < 0 || m.Component >= h.Components {
-		return nil, false, fmt.Errorf("map: component %d of a history of %d; want 0 to %d", m.Component, h.Components, h.Components-1)
-	}
-	low, high, whole := extent(h, m.Component)
-	if low > high {
-		return nil, false, fmt.Errorf("map: component %d has no finite value among its %d", m.Component, h.Block.Slices()*h.Block.Sites())
-	}
+// shade returns the colours, in a number of levels, of a map whose data run from
+// low to high.
+func (m Map) shade(low, high float64, levels int) (*shade, error) {
 	if m.Low != 0 || m.High != 0 {
 		if !(m.Low < m.High) || !finite(m.Low) || !finite(m.High) {
-			return nil, false, fmt.Errorf("map: colours from %v to %v; want finite numbers, the lower first", m.Low, m.High)
+			return nil, fmt.Errorf("colours from %v to %v; want finite numbers, the lower first", m.Low, m.High)
 		}
 		low, high = m.Low, m.High
 	}
 	if m.Diverging {
 		if !finite(m.Centre) {
-			return nil, false, fmt.Errorf("map: centre %v; want a finite number", m.Centre)
+			return nil, fmt.Errorf("centre %v; want a finite number", m.Centre)
 		}
 		reach := max(math.Abs(low-m.Centre), math.Abs(high-m.Centre))
 		low, high = m.Centre-reach, m.Centre+reach
 	}
-	if low, high, err = spread(low, high); err != nil {
-		return nil, false, fmt.Errorf("map: %w", err)
+	low, high, err := spread(low, high)
+	if err != nil {
+		return nil, err
 	}
-	s, err = newShade(low, high, m.Diverging)
-	return s, whole, err
+	return newShade(low, high, m.Diverging, levels)
+}
+
+// strokes returns the curves of the map.
+func (m Map) strokes() []plot.Plotter {
+	var strokes []plot.Plotter
+	for i, curve := range m.Curves {
+		strokes = append(strokes, stroke{curve, onMap(i), true})
+	}
+	return strokes
+}
+
+// drawPins draws the pins on the data area, whose axes run over x and t.
+func (m Map) drawPins(data draw.Canvas, x, t [2]float64) {
+	places := make([]vg.Point, len(m.Pins))
+	for i, pin := range m.Pins {
+		places[i] = vg.Point{X: data.X((pin.X - x[0]) / (x[1] - x[0])), Y: data.Y((pin.T - t[0]) / (t[1] - t[0]))}
+	}
+	drawPins(data, places)
 }
 
 // cells returns the range that the cells of an axis cover.
@@ -166,16 +186,15 @@ func cells(a lattice.Axis) ([2]float64, error) {
 
 // A picture plots a history as an image.
 type picture struct {
-	history   *field.History
-	component int
-	shade     *shade
-	dpi       float64
+	layer layer
+	shade *shade
+	dpi   float64
 }
 
 // Plot draws the image on the data area c of p.
 func (q picture) Plot(c draw.Canvas, p *plot.Plot) {
 	size := c.Size()
-	img := raster(q.history, q.component, int(size.X.Dots(q.dpi)+0.5), int(size.Y.Dots(q.dpi)+0.5), q.shade)
+	img := raster(q.layer, int(size.X.Dots(q.dpi)+0.5), int(size.Y.Dots(q.dpi)+0.5), q.shade)
 	plotter.NewImage(img, p.X.Min, p.Y.Min, p.X.Max, p.Y.Max).Plot(c, p)
 }
 

@@ -71,7 +71,7 @@ func TestMapColours(t *testing.T) {
 	h.Set(1, 0, 1, math.Inf(-1))
 	for _, diverging := range []bool{false, true} {
 		d := drawMap(t, Map{History: h, Diverging: diverging, Centre: 9.5})
-		s, err := newShade(0, 19, diverging)
+		s, err := newShade(0, 19, diverging, smooth)
 		if err != nil {
 			t.Fatal(err)
 		}

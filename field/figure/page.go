@@ -21,7 +21,7 @@ import (
 // A Page is the size of a figure. Zero fields take their defaults.
 type Page struct {
 	Width, Height float64 // in millimetres; default 160 × 110
-	DPI           int     // of PNG files and of the raster of maps; default 150
+	DPI           int     // of PNG files and of the raster of maps; default 150, of animations 100
 }
 
 func (p Page) withDefaults() Page {

@@ -68,6 +68,11 @@ func checkPick(h *field.History, component int, parts []int) error {
 	if h == nil {
 		return fmt.Errorf("%v asked for without a history", parts)
 	}
+	return checkComponent(h, component)
+}
+
+// checkComponent returns an error unless h has all its values and the component.
+func checkComponent(h *field.History, component int) error {
 	if want := h.Block.Slices() * h.Components * h.Block.Sites(); want == 0 || len(h.Data) != want {
 		return fmt.Errorf("history of %d values for %d slices × %d components × %d sites", len(h.Data), h.Block.Slices(), h.Components, h.Block.Sites())
 	}

@@ -35,11 +35,11 @@ func TestCovered(t *testing.T) {
 
 func TestRasterMean(t *testing.T) {
 	h := ramp(4, 6) // value 6n + i
-	s, err := newShade(0, 23, false)
+	s, err := newShade(0, 23, false, smooth)
 	if err != nil {
 		t.Fatal(err)
 	}
-	img := raster(h, 0, 3, 2, s)
+	img := raster(layer{history: h}, 3, 2, s)
 	if b := img.Bounds(); b.Dx() != 3 || b.Dy() != 2 {
 		t.Fatalf("image of %v; want 3 × 2", b)
 	}
@@ -55,7 +55,7 @@ func TestRasterMean(t *testing.T) {
 	h.Set(3, 0, 5, math.NaN())
 	h.Set(0, 0, 0, math.Inf(1))
 	h.Set(0, 0, 1, math.Inf(-1))
-	img = raster(h, 0, 3, 2, s)
+	img = raster(layer{history: h}, 3, 2, s)
 	if img.RGBAAt(2, 0) != notFinite || img.RGBAAt(0, 1) != notFinite {
 		t.Error("a pixel with a value that is not finite is not marked")
 	}

@@ -12,19 +12,27 @@ import (
 // which neither colour map contains.
 var notFinite = color.RGBA{0x00, 0x9E, 0x73, 0xFF}
 
+// blank is what is not in the region of a map: the paper.
+var blank = color.RGBA{0xFF, 0xFF, 0xFF, 0xFF}
+
 // A shade turns values into colours: low into the first of the table, high into
 // the last, values beyond them likewise.
 type shade struct {
 	low, high float64
-	table     [1024]color.RGBA
+	table     []color.RGBA
 }
 
-func newShade(low, high float64, diverging bool) (*shade, error) {
+// smooth is a number of levels that no eye tells apart.
+const smooth = 1024
+
+// newShade returns the colours from low to high in a number of levels, at least
+// two.
+func newShade(low, high float64, diverging bool, levels int) (*shade, error) {
 	var m palette.ColorMap = moreland.ExtendedBlackBody()
 	if diverging {
 		m = moreland.SmoothBlueRed()
 	}
-	s := &shade{low: low, high: high}
+	s := &shade{low, high, make([]color.RGBA, levels)}
 	m.SetMin(0)
 	m.SetMax(float64(len(s.table) - 1))
 	for i := range s.table {

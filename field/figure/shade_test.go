@@ -9,7 +9,7 @@ import (
 // The ends and the middle of the cool–warm map in Moreland (2009), table of
 // section 5: (59, 76, 192), (221, 221, 221), (180, 4, 38).
 func TestDivergingShade(t *testing.T) {
-	s, err := newShade(-2, 6, true)
+	s, err := newShade(-2, 6, true, smooth)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -42,7 +42,7 @@ func lightness(c color.RGBA) float64 {
 // The lightness of the colours is linear in the value: from black to white, or
 // from both ends to the lightest colour at the centre, equally on both sides.
 func TestLightness(t *testing.T) {
-	s, err := newShade(0, 100, false)
+	s, err := newShade(0, 100, false, smooth)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -52,7 +52,7 @@ func TestLightness(t *testing.T) {
 			t.Errorf("lightness %.2f at %g%% of the range", got, v)
 		}
 	}
-	d, err := newShade(-1, 1, true)
+	d, err := newShade(-1, 1, true, smooth)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -66,7 +66,7 @@ func TestLightness(t *testing.T) {
 // Green is kept for values that are not finite: no colour of a map comes near.
 func TestNotFiniteStandsOut(t *testing.T) {
 	for _, diverging := range []bool{false, true} {
-		s, err := newShade(0, 1, diverging)
+		s, err := newShade(0, 1, diverging, smooth)
 		if err != nil {
 			t.Fatal(err)
 		}

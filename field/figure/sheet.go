@@ -80,6 +80,7 @@ type sheet struct {
 	plotters       []plot.Plotter
 
 	right vg.Length // room to leave on the right
+	above vg.Length // room to leave between the legend and the data
 }
 
 // An entry is a line of the legend.
@@ -110,6 +111,7 @@ func (s *sheet) draw(c draw.Canvas) (data draw.Canvas, err error) {
 		return data, err
 	}
 	c.Max.X -= s.right
+	c.Max.Y -= s.above
 	if err := checkRoom(c.Size()); err != nil {
 		return data, err
 	}
@@ -154,6 +156,14 @@ func (s *sheet) draw(c draw.Canvas) (data draw.Canvas, err error) {
 	p.Draw(c)
 	frame(data)
 	return data, nil
+}
+
+// axes returns a plot with the ranges of the axes, for what is drawn on the data
+// later.
+func (s *sheet) axes() *plot.Plot {
+	p := plot.New()
+	p.X.Min, p.X.Max, p.Y.Min, p.Y.Max = s.x[0], s.x[1], s.y[0], s.y[1]
+	return p
 }
 
 // checkRoom returns an error if there is too little room for the data.

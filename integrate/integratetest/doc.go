@@ -22,6 +22,7 @@
 //   - its memory: what Memory and Seek carry to a new stepper gives the same
 //     bits, and Start changes nothing that it is handed;
 //   - Field and State, which must agree, and Step, which must not allocate;
+//   - Advance, if the stepper offers it, which must give the bits of Step;
 //   - reversibility and symplecticity, if they are claimed.
 //
 // Losses, open ends, a given second slice and coefficients known at slices only

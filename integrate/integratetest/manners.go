@@ -39,8 +39,29 @@ func (e *examiner) manners() {
 		if !sameBits(p.Start.Field, given.Field) || !sameBits(p.Start.Rate, given.Rate) {
 			e.fault(tr.name, "the start of the problem was changed; want a copy to be changed")
 		}
+		e.advance(tr, p, st)
 		if n := allocations(st); n > 0 {
 			e.fault(tr.name, "a Step makes %d allocations; want none", n)
+		}
+	}
+}
+
+// advance checks that many steps at once, where a stepper offers them, are the
+// steps one by one. st has made five.
+func (e *examiner) advance(tr trial, p integrate.Problem, st integrate.Stepper) {
+	other, err := e.m.Start(p)
+	if err != nil {
+		return // order has told
+	}
+	many, ok := other.(integrate.Advancer)
+	if !ok {
+		return
+	}
+	many.Advance(2)
+	many.Advance(3)
+	for k, m := range many.Memory() {
+		if !sameBits(m, st.Memory()[k]) {
+			e.fault(tr.name, "Advance differs from as many Steps by %.3g in array %d of the memory; want the same bits", m.MaxDifference(st.Memory()[k]), k)
 		}
 	}
 }

@@ -135,20 +135,23 @@ type python struct {
 
 func newPython(dir string) *python {
 	p := &python{script: filepath.Join(dir, "splu.py")}
-	if p.err = os.WriteFile(p.script, spluPython, 0o666); p.err != nil {
-		return p
+	if p.err = os.WriteFile(p.script, spluPython, 0o666); p.err == nil {
+		p.name, p.err = pythonWith("scipy.sparse.linalg")
 	}
+	return p
+}
+
+// pythonWith returns the path of a Python that has a module.
+func pythonWith(module string) (string, error) {
 	for _, name := range []string{"python3", "python3.13", "python3.12", "python3.11"} {
 		for _, folder := range filepath.SplitList(os.Getenv("PATH")) {
 			path := filepath.Join(folder, name)
-			if exec.Command(path, "-c", "import scipy.sparse.linalg").Run() == nil {
-				p.name = path
-				return p
+			if exec.Command(path, "-c", "import "+module).Run() == nil {
+				return path, nil
 			}
 		}
 	}
-	p.err = errors.New("not installed")
-	return p
+	return "", errors.New("not installed")
 }
 
 func (p *python) run(n, points int) func() (float64, error) {

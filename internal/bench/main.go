@@ -34,7 +34,14 @@ func main() {
 	name := flag.String("set", "evolve", "set of cases: "+strings.Join(names, ", "))
 	only := flag.String("only", "", "run the cases whose name contains this")
 	rounds := flag.Int("rounds", 5, "alternating runs of each case")
+	child := flag.Bool("portable", false, "print the time of the path in use and nothing else")
 	flag.Parse()
+	if *child {
+		if err := printPortable(); err != nil {
+			log.Fatal(err)
+		}
+		return
+	}
 	set, ok := sets[*name]
 	if !ok || *rounds < 1 {
 		log.Fatalf("no set %q with %d rounds; want one of %s and at least 1 round", *name, *rounds, strings.Join(names, ", "))
@@ -44,6 +51,9 @@ func main() {
 		log.Fatal(err)
 	}
 	defer os.RemoveAll(dir)
+	if *name == "evolve" {
+		fmt.Printf("memory bandwidth of one core, by a triad: %.3g GB/s\n", bandwidth())
+	}
 	fmt.Printf("%-24s %10s %10s %8s  peer (%s)\n", "case", "ours", "peer", "ratio", set.unit)
 	for _, b := range set.cases(dir) {
 		if strings.Contains(b.name, *only) {

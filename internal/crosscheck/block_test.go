@@ -65,7 +65,7 @@ func TestEvolvedIsFoundAllAtOnce(t *testing.T) {
 		held := constraint.On(b)
 		held.Slice(0, run.History.Slice(0))
 		held.Slice(1, run.History.Slice(1))
-		found, err := minimize.LeastResidual(context.Background(), s, held, field.Repeat(b, run.History.Slice(0)), nil)
+		found, err := minimize.LeastResidual(context.Background(), s, held, field.Repeat(b, run.History.Slice(0)), &minimize.Settings{Strategy: minimize.BlockWide})
 		if err != nil {
 			t.Errorf("%s: %v", c.name, err)
 			continue
