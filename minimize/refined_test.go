@@ -63,7 +63,7 @@ func TestAllenCahnSquare(t *testing.T) {
 }
 
 // Enneper's surface over (−½, ½)², x = u + uv² − u³/3, y = −v − u²v + v³/3,
-// height u² − v², is minimal [Nitsche 1989, Lectures on Minimal Surfaces, chapter
+// height u² − v², is minimal [Nitsche 1989, Minimal Surfaces vol. 1, chapter
 // II]; its area from Green's formula with 30 digits: independent computation.
 func TestEnneperSurface(t *testing.T) {
 	measure := func(ctx context.Context, b lattice.Block) ([]refine.Quantity, error) {
