@@ -36,7 +36,7 @@ func (p *pair) centre() float64 {
 }
 
 // drawMap writes the space-time map of a collision, both halves of the line, with
-// the places that were followed.
+// the places that were followed. The outer vacuum is in the middle of the colours.
 func (j job) drawMap(c collision, f *flight, name string) error {
 	const most = 40
 	h := unfold(f.history, min(most, f.history.Block.Space.To()))
@@ -53,7 +53,7 @@ func (j job) drawMap(c collision, f *flight, name string) error {
 	}
 	return j.save(figure.Map{
 		History: h, Title: fmt.Sprintf("%s at v = %.5g, an idealised model", c.title, c.speed),
-		Diverging: true, Centre: c.centre(),
+		Diverging: true, Centre: c.outer,
 		Curves: []figure.Curve{centres},
 	}, name)
 }
