@@ -81,7 +81,7 @@ func main() {
 	flag.BoolVar(&j.critical, "critical", false, "find the critical speed")
 	flag.Float64Var(&j.watch, "watch", 0, "watch `time` of -scan (500 unless given) and -critical (400)")
 	flag.Float64Var(&j.spacing, "spacing", 0.2, "spacing of the coarsest lattice, which is that of a scan")
-	flag.Float64Var(&j.step, "step", 0, "its time step; a quarter of the spacing unless given, in a scan a sixth")
+	flag.Float64Var(&j.step, "step", 0, "its time step; a quarter of the spacing unless given, in a scan an eighth")
 	quick := flag.Bool("quick", false, "one collision on coarse lattices, to see that it works")
 	flag.StringVar(&j.out, "out", "collide-out", "folder for results.json, tables and figures")
 	flag.Parse()
@@ -227,8 +227,8 @@ func (j job) campaign(ctx context.Context) ([]refine.Result, error) {
 	if j.watch == 0 {
 		j.watch = 500
 	}
-	// One lattice must do, so its error in time is brought down to that in space.
-	j.step = j.stepOr(1. / 6)
+	// One lattice must do, so its error in time is brought below that in space.
+	j.step = j.stepOr(1. / 8)
 	table, err := j.scan(ctx)
 	if err != nil {
 		return nil, err
