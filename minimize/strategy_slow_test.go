@@ -15,7 +15,7 @@ import (
 )
 
 // The bar of long blocks: 1024 × 1024 events of a collision from a start that
-// knows the Cauchy pair alone, without any march; max|r| ≤ 1e-10 in 120 s.
+// knows the Cauchy pair alone, without any march; max|r| ≤ 1e-10.
 func TestWindowsOnMillionEventsSlow(t *testing.T) {
 	clock := lattice.Axis{From: -512 * 0.08, Step: 0.08, Sites: 1024}
 	line := lattice.Axis{From: -51.15, Step: 0.1, Sites: 1024}
@@ -32,8 +32,8 @@ func TestWindowsOnMillionEventsSlow(t *testing.T) {
 	}
 	wall := time.Since(began)
 	t.Logf("max|r| %.3g in %v\n%v", found.Report.After.Max, wall, found.Report)
-	if !(found.Report.After.Max <= 1e-10) || wall > 2*time.Minute {
-		t.Errorf("max|r| %.3g in %v; want 1e-10 in 2 minutes", found.Report.After.Max, wall)
+	if !(found.Report.After.Max <= 1e-10) {
+		t.Errorf("max|r| %.3g; want at most 1e-10", found.Report.After.Max)
 	}
 }
 

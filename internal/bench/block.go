@@ -28,14 +28,14 @@ func blockCases(dir string) []bench {
 	python := newPython(dir)
 	c := newCholmod(dir)
 	total, factor := func(t [4]float64) float64 { return t[0] + t[1] + t[3] }, func(t [4]float64) float64 { return t[2] }
-	return []bench{
+	return append([]bench{
 		{"factor5-512-splu", "SciPy splu, MMD_AT_PLUS_A, symmetric mode", dissect(512, 5, total), python.run(512, 5)},
 		{"factor13-512-splu", "SciPy splu, MMD_AT_PLUS_A, symmetric mode", dissect(512, 13, total), python.run(512, 13)},
 		{"factor5-512-cholmod", "CHOLMOD, METIS, BLAS", dissect(512, 5, total), c.run(512, total)},
 		{"factor5-1024-cholmod", "CHOLMOD, METIS, BLAS", dissect(1024, 5, total), c.run(1024, total)},
 		{"refactor5-1024-cholmod", "CHOLMOD, METIS, BLAS", dissect(1024, 5, factor), c.run(1024, factor)},
 		{"growth5-256-1024", "exponent p of N^p, and its bar", growth, func() (float64, error) { return 1.6, nil }},
-	}
+	}, historyCases()...)
 }
 
 // dissect times analysis, factorisation, a second factorisation and a solve.
