@@ -82,6 +82,7 @@ type least struct {
 	sum           float64        // 2C/unit: Σ r², and the soft conditions
 	lifted        map[int]bool   // rows left out
 	exact         bool           // h comes from the march
+	met           float64        // Report.Scale at the start
 }
 
 func newLeast(p *problem, s *action.Discrete) (*least, error) {
@@ -284,8 +285,13 @@ func (l *least) measure() {
 	r.CostAfter = l.cost(l.sum)
 	r.Scale = l.scale(l.jac, l.res.Data, l.normal.rows)
 	r.Tolerance = l.set.Tolerance
+	if l.met == 0 {
+		l.met = r.Scale
+	}
 	if r.Tolerance == 0 {
-		r.Tolerance = 1e-10 * r.Scale
+		// Where the history vanishes its terms do, too: what is lost in the
+		// rounding of the first ones counts as nothing.
+		r.Tolerance = max(1e-10*r.Scale, 1e-16*l.met)
 	}
 	r.Flat = l.flat()
 }
